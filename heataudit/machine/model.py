@@ -81,6 +81,14 @@ class Cycle:
         """Number of phases."""
         return len(self.duration)
 
+    def take(self, rows: NDArray[np.intp]) -> Cycle:
+        """Some of the phases, in any order, repeated or not."""
+        return Cycle(
+            self.phase[rows], self.duration[rows], self.repeats[rows], self.other_heat[rows],
+            {name: codes[rows] for name, codes in self.moves.items()},
+            {key: values[rows] for key, values in self.values.items()},
+        )  # fmt: skip
+
     def value(self, component: str, quantity: str) -> Floats:
         """Values of one quantity of one component, shape (N,); NaN where the cycle says nothing."""
         given = self.values.get((component, quantity))

@@ -1,0 +1,192 @@
+"""From solved branches and nodes to the states of pumps, components and actuators."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import numpy as np
+
+from heataudit.network.assemble import Network
+from heataudit.network.kinds import pumps
+from heataudit.network.kinds.actuators import Actuator
+from heataudit.network.linear import Array
+from heataudit.network.openings import Spools
+from heataudit.network.plant import Plant
+from heataudit.network.settle import Settled
+from heataudit.network.solution import ActuatorState, ComponentState, PumpState, Solution, State
+from heataudit.physics.constants import STANDARD_GRAVITY
+from heataudit.physics.pumps import loss_torque, rated_loss_torque, shaft_power, shaft_torque, viscosity_ratio
+
+AS_ASKED = 1e-6
+"""Share [-] by which a speed may fall short of the asked one and still count as reached."""
+
+
+def extract(network: Network, spools: Spools, settled: Settled) -> Solution:
+    """States of all components, and the balances of every phase."""
+    found = _Found(network, settled)
+    components = _components(network, found)
+    pump_state = _pumps(network, found)
+    actuators = _actuators(network, spools, settled, found)
+    heat = components.heat.sum(axis=0) + pump_state.heat.sum(axis=0) + actuators.heat.sum(axis=0)
+    given = pump_state.shaft_power.sum(axis=0) - actuators.power.sum(axis=0) - components.lifting.sum(axis=0)
+    plant = network.plant
+    return Solution(
+        ports=plant.ports,
+        pressure=settled.state.pressure,
+        oil_temperature=plant.temperature,
+        viscosity=plant.viscosity,
+        density=plant.density,
+        components=components,
+        pumps=pump_state,
+        actuators=actuators,
+        converged=settled.converged,
+        iterations=settled.iterations,
+        residual=settled.residual,
+        node_balance=_node_balance(network, found),
+        balance_error=given - heat,
+    )
+
+
+class _Found:
+    """Flow and drop of branches by component and role."""
+
+    def __init__(self, network: Network, settled: Settled) -> None:
+        self.state = settled.state
+        self.number = {(b.component, b.role): k for k, b in enumerate(network.branches.items)}
+        self.nothing = np.zeros(network.plant.phases)
+
+    def flow(self, component: str, role: str) -> Array:
+        """Flow [m³/s]; zero where there is no such branch."""
+        k = self.number.get((component, role))
+        return self.nothing if k is None else self.state.flow[k]
+
+    def drop(self, component: str, role: str) -> Array:
+        """Drop [Pa] where oil flows, else 0."""
+        k = self.number.get((component, role))
+        return self.nothing if k is None else np.where(self.state.flow[k] != 0, self.state.drop[k], 0.0)
+
+    def heat(self, component: str, role: str) -> Array:
+        """Power [W] lost in a branch."""
+        return self.flow(component, role) * self.drop(component, role)
+
+    def pressure(self, node: int) -> Array:
+        """Pressure [Pa] of a node, NaN where nothing determines it."""
+        return self.state.pressure[node]
+
+
+def _components(network: Network, found: _Found) -> ComponentState:
+    plant = network.plant
+    rows: list[tuple[str, str, Array, Array, Array, Array, Array]] = []
+    nothing = found.nothing
+    for line in plant.rows_of("lines"):
+        flow = found.flow(line.name, "line")
+        head = plant.density * STANDARD_GRAVITY * line.rise
+        friction = found.drop(line.name, "line") - np.where(flow != 0, head, 0.0)
+        rows.append((line.name, "line", flow, friction + head, flow * friction, nothing, flow * head))
+    for valve in plant.rows_of("valves"):
+        flow, drop = found.flow(valve.name, "valve"), found.drop(valve.name, "valve")
+        rows.append((valve.name, valve.kind, flow, drop, flow * drop, nothing, nothing))
+    for section in plant.rows_of("sections"):
+        feed = [found.flow(section.name, role) for role in ("P-A", "P-B")]
+        drop = [found.drop(section.name, role) for role in ("P-A", "P-B")]
+        back = found.heat(section.name, "B-T") + found.heat(section.name, "A-T")
+        heat = found.heat(section.name, "P-A") + found.heat(section.name, "P-B") + back
+        rows.append((section.name, "section", feed[0] + feed[1], drop[0] + drop[1], heat, back, nothing))
+    others = [(g.name, "gallery") for g in network.galleries]
+    others += [(b.component, "void") for b in network.branches.items if b.role == "void"]
+    for name, kind in others:
+        flow, drop = found.flow(name, kind), found.drop(name, kind)
+        rows.append((name, kind, flow, drop, flow * drop, nothing, nothing))
+    names, kinds, *arrays = zip(*rows, strict=True) if rows else ((), (), (), (), (), (), ())
+    shape = (len(rows), plant.phases)
+    return ComponentState(names, kinds, *(np.array(a, float).reshape(shape) for a in arrays))
+
+
+def _pumps(network: Network, found: _Found) -> PumpState:
+    plant = network.plant
+    table = plant.rows_of("pumps")
+    states = [_pump(pump, plant, network, found) for pump in table]
+    arrays = {name: np.array([state[name] for state in states]) for name in states[0]}
+    return PumpState(name=tuple(pump.name for pump in table), **arrays)
+
+
+def _pump(pump: Any, plant: Plant, network: Network, found: _Found) -> dict[str, Array]:
+    """State of one pump, arrays of shape (phases,)."""
+    turning = pumps.full_flow(pump, plant) > 0
+    outlet, inlet, drain = (
+        np.nan_to_num(found.pressure(plant.node(label))) for label in (pump.outlet, pump.suction, pump.drain_to)
+    )
+    swept = found.flow(pump.name, "displacement")
+    for injection in network.branches.injections:
+        if injection.component == pump.name and injection.flow.any() and injection.node == plant.node(pump.outlet):
+            swept = injection.flow
+    drop = np.where(turning, outlet - inlet, 0.0)
+    slip = np.where(turning, pumps.slip(pump, plant) * drop, 0.0)
+    speed = pumps.speed(pump, plant)
+    ratio = viscosity_ratio(plant.viscosity, pump.rated_viscosity, pump.viscosity_exponent)
+    rated = rated_loss_torque(pump.displacement, pump.rated_pressure, pump.hydromechanical_efficiency)
+    loss = loss_torque(rated, pump.viscous_share, drop / pump.rated_pressure, speed / pump.speed, ratio)
+    used = np.where(turning, swept / np.where(speed > 0, speed, 1.0), 0.0)
+    shaft = np.where(turning, shaft_power(shaft_torque(used, drop, loss), speed), 0.0)
+    hydraulic = outlet * (swept - slip) + drain * slip - inlet * swept
+    return {
+        "pressure": outlet, "inlet_pressure": inlet, "flow": swept - slip, "slip": slip, "speed": speed,
+        "displacement": used / pump.displacement, "setting": np.broadcast_to(pumps.setting(pump, plant), speed.shape),
+        "shaft_power": shaft, "heat": shaft - hydraulic,
+    }  # fmt: skip
+
+
+def _actuators(network: Network, spools: Spools, settled: Settled, found: _Found) -> ActuatorState:
+    states = [_actuator(a, spools, settled, found) for a in network.actuators]
+    shape = (len(states), network.plant.phases)
+    names = ("state", "flow", "speed", "asked_speed", "inlet", "outlet", "load", "opening", "power", "heat")
+    arrays = {name: np.array([state[name] for state in states], float).reshape(shape) for name in names}
+    codes = arrays.pop("state").astype(np.int8)
+    rows = [actuator.row for actuator in network.actuators]
+    return ActuatorState(
+        tuple(r.name for r in rows), tuple(r.kind for r in rows), tuple(r.section for r in rows), codes, **arrays
+    )
+
+
+def _actuator(actuator: Actuator, spools: Spools, settled: Settled, found: _Found) -> dict[str, Array]:
+    """State of one actuator, arrays of shape (phases,)."""
+    command, (forward, backward) = actuator.command, actuator.drives
+    going_back = command.backward
+    flow = np.where(going_back, found.flow(actuator.name, "backward"), found.flow(actuator.name, "forward"))
+    left = flow * np.where(going_back, backward.flow_ratio, forward.flow_ratio)
+    inlet = np.where(going_back, found.pressure(backward.inlet), found.pressure(forward.inlet))
+    outlet = np.where(going_back, found.pressure(backward.outlet), found.pressure(forward.outlet))
+    active = command.forward | command.backward
+    speed = actuator.speed(flow)
+    load = actuator.load_found(inlet, outlet)
+    power = np.where(flow > 0, actuator.power(np.nan_to_num(load), speed, flow), 0.0)
+    hydraulic = np.where(flow > 0, np.nan_to_num(inlet) * flow - np.nan_to_num(outlet) * left, 0.0)
+    moving, short = flow > 0, speed < command.speed * (1.0 - AS_ASKED)
+    state = np.select(
+        [~active | command.pressing | (command.speed == 0), ~moving, short], [State.HELD, State.STALLED, State.SLOW],
+        State.MOVING,
+    )  # fmt: skip
+    shown = active & ~(command.speed == 0)
+    one_port = actuator.row.kind == "plunger"
+    opening = np.full(len(flow), np.nan)
+    if actuator.row.section:
+        opening = np.where(active, command.opening * spools.share(actuator.row.section, settled), 0.0)
+    return {
+        "state": state, "flow": flow, "speed": speed, "asked_speed": np.where(active, command.speed, np.nan),
+        "inlet": np.where(shown & ~(going_back & one_port), inlet, np.nan),
+        "outlet": np.where(shown & ~(command.forward & one_port), outlet, np.nan),
+        "load": np.where(active, load, np.nan), "opening": opening, "power": power, "heat": hydraulic - power,
+    }  # fmt: skip
+
+
+def _node_balance(network: Network, found: _Found) -> Array:
+    """Worst flow left over at a node [-], as a share of the largest flow of the phase, shape (phases,)."""
+    branches, flow = network.branches, found.state.flow
+    left = np.zeros((branches.node_count, branches.phases))
+    for injection in branches.injections:
+        left[injection.node] += injection.flow
+    for k, item in enumerate(branches.items):
+        left[item.start] -= flow[k]
+        left[item.end] += branches.ratio[k] * flow[k]
+    largest = np.maximum(np.abs(flow).max(axis=0, initial=0.0), 1e-12)
+    return np.abs(left[1:]).max(axis=0, initial=0.0) / largest

@@ -1,0 +1,1 @@
+"""Component kinds: what each is to the network, one module for each table of the workbook."""
