@@ -23,6 +23,10 @@ PRESSURE_SCALE = 1e7
 LAMINAR_FLOW = 1e-6
 """Flow [-], as a share of the pump flow, below which a throttle is taken as linear, so that its slope stays finite."""
 
+LEAST_SLOPE = 1e-10
+"""Slope [-] that every law has at the least (100 bar per pump flow): without it a pump at its setting, or a load without
+a line or a spool, would be infinitely conductive. It costs at most 0.001 Pa at the whole pump flow."""
+
 NODE_LEAK = 1e-11
 """Leak [-] of every node to the tank (pump flow per 100 bar): it fixes the pressure behind a closed check."""
 
@@ -92,8 +96,9 @@ class Elements:
     def laws(self, flow: Array) -> tuple[Array, Array]:
         """Drop that each element needs and its slope over flow [-], shapes (elements, batch), at the flow [-]."""
         root = np.sqrt(flow * flow + LAMINAR_FLOW**2)
-        drop = self.constant + flow * (self.linear + self.quadratic * root)
-        slope = self.linear + self.quadratic * (2.0 * root - LAMINAR_FLOW**2 / root)
+        linear = self.linear + LEAST_SLOPE
+        drop = self.constant + flow * (linear + self.quadratic * root)
+        slope = linear + self.quadratic * (2.0 * root - LAMINAR_FLOW**2 / root)
         lines = self.lines
         if lines.element.size:
             line_flow = lines.flow_factor * flow[lines.element] * self.flow_scale

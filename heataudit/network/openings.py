@@ -1,14 +1,14 @@
 """Spools and galleries that find their own place: openings for asked speeds, and the galleries that they close.
 
 Every unknown is a number per phase between bounds that are known beforehand: what a gallery lets pass, as a share of
-its flow in neutral, and the opening of a spool whose oil goes elsewhere too. Each is a bracketed root (Chandrupatla's
-method, `scipy.optimize.elementwise.find_root`), several are taken in turn until none moves.
+its flow in neutral, and the opening of a spool whose oil goes elsewhere too. A single one is a bracketed root
+(Chandrupatla's method, `scipy.optimize.elementwise.find_root`). Several are taken in turn once, then together by
+Newton's method with difference quotients, and in turn again where that fails.
 """
 
 from __future__ import annotations
 
-from collections.abc import Callable
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
 import numpy as np
 from scipy.optimize import elementwise
@@ -19,40 +19,37 @@ from heataudit.network.elements import Integers
 from heataudit.network.linear import Array
 from heataudit.network.settle import Settled, Surroundings, settle
 
-SWEEPS = 20
-STILL = 1e-10
+NEWTON_STEPS = 8
+HALVINGS = 4
+DIFFERENCE = 1e-6
+STILL = 1e-9
 LEAST_OPENING = 1e-4
 TOLERANCES = {"xatol": 1e-15, "xrtol": 1e-13, "fatol": 1e-14, "frtol": 0.0}
 
 
-@dataclass
-class Positions:
-    """Where everything stands: `gallery` [-] of shape (galleries, phases), `spool` [-] of shape (paths, phases).
+class Spools:
+    """The unknowns of a network, arrays of shape (unknowns, phases): first its galleries, then its moves.
 
-    `gallery` is the flow that it passes per that in neutral at the same drop, `spool` the opening per the allowed one
-    of those spools that are `solved` here; NaN elsewhere.
+    `place` [-] is what a gallery passes per its flow in neutral at the same drop, or the opening of a spool per the
+    allowed one; `free` tells what has to be found. `seen_open` notes the spools, shape (moves, phases), that shared
+    their oil with another way in any trial.
     """
 
-    gallery: Array
-    spool: Array
-
-    def take(self, rows: Integers) -> Positions:
-        """Some of the phases."""
-        return Positions(self.gallery[:, rows], self.spool[:, rows])
-
-
-class Spools:
-    """The spools and galleries of a network."""
-
     def __init__(self, network: Network) -> None:
+        """Galleries stand where the allowed openings leave them."""
         self.network = network
         plant = network.plant
         self.around = Surroundings(
             plant.machine.oil["pressure_viscosity_coefficient"], network.paths, network.highest_setting
         )
-        self.allowed = {
-            section: self._allowed(section) for gallery in network.galleries for section in gallery.sections
-        }
+        self.allowed = {s: self._allowed(s) for gallery in network.galleries for s in gallery.sections}
+        self.galleries = len(network.galleries)
+        self.place = np.ones((self.galleries + len(network.paths), plant.phases))
+        self.free = np.zeros(self.place.shape, bool)
+        self.seen_open = np.zeros((len(network.paths), plant.phases), bool)
+        for number, gallery in enumerate(network.galleries):
+            self.place[number] = gallery.conductance(np.stack([self.allowed[s] for s in gallery.sections]))
+            self.free[number] = self._is_asked(gallery.sections)
 
     def _allowed(self, section: str) -> Array:
         """How far a spool may open [-], 0 in neutral, shape (phases,)."""
@@ -61,108 +58,149 @@ class Spools:
             return np.zeros(self.network.plant.phases)
         return np.where(command.forward | command.backward, command.opening, 0.0)
 
-    def solve(self) -> Settled:
-        """Solve the network, and find every opening."""
-        network = self.network
-        phases = network.plant.phases
-        allowed = [np.stack([self.allowed[s] for s in g.sections]) for g in network.galleries]
-        gallery = np.array([g.conductance(x) for g, x in zip(network.galleries, allowed, strict=True)])
-        positions = Positions(
-            gallery.reshape(len(network.galleries), phases), np.full((len(network.paths), phases), np.nan)
-        )
-        everything = np.arange(phases)
-        settled = self._settle(positions, everything)
-        still = self._waiting(settled, positions)
-        for _ in range(SWEEPS):
-            rows = np.flatnonzero(still)
-            if not rows.size:
-                break
-            before = positions.take(rows)
-            self._sweep(settled, positions, rows)
-            settled.put(rows, self._settle(positions, rows))
-            moved = np.zeros(len(rows))
-            for now, then in ((positions.gallery, before.gallery), (positions.spool, before.spool)):
-                change = np.abs(np.nan_to_num(now[:, rows]) - np.nan_to_num(then))
-                moved = np.maximum(moved, change.max(axis=0, initial=0.0))
-            still[rows] = (moved > STILL) & (self._unknowns(settled, positions, rows) > 1)
-            still |= settled.throttled.open_way.any(axis=0)
-        settled.converged[still] = False
-        return settled
-
-    def _waiting(self, settled: Settled, positions: Positions) -> Flags:
-        """Phases in which something has still to find its place."""
-        waiting = settled.throttled.open_way.any(axis=0)
-        for number in range(len(self.network.galleries)):
-            found = self._found(number, settled, np.arange(len(waiting)))
-            waiting |= np.abs(found - positions.gallery[number]) > STILL
-        return waiting
-
-    def _unknowns(self, settled: Settled, positions: Positions, rows: Integers) -> Array:
-        """How many unknowns influence each other in each phase."""
-        count = (~np.isnan(positions.spool[:, rows])).sum(axis=0)
-        return count + self._asked_galleries()[:, rows].sum(axis=0)
-
-    def _asked_galleries(self) -> Flags:
-        """Galleries, shape (galleries, phases), with a spool whose opening is solved."""
-        network = self.network
-        asked = np.zeros((len(network.galleries), network.plant.phases), bool)
-        for number, gallery in enumerate(network.galleries):
-            for section in gallery.sections:
-                command = network.plant.section_command(section)
-                if command is not None:
-                    asked[number] |= command.moving & ~np.isnan(command.speed)
+    def _is_asked(self, sections: tuple[str, ...]) -> Flags:
+        """Phases in which a speed is asked of one of the sections."""
+        asked = np.zeros(self.network.plant.phases, bool)
+        for section in sections:
+            command = self.network.plant.section_command(section)
+            if command is not None:
+                asked |= command.moving & ~np.isnan(command.speed)
         return asked
 
-    def _sweep(self, settled: Settled, positions: Positions, rows: Integers) -> None:
-        """Find each unknown once, in turn, in place."""
-        for number, asked in enumerate(self._asked_galleries()):
-            these = rows[asked[rows]]
+    def solve(self) -> Settled:
+        """Solve the network, and find every place."""
+        everything = np.arange(self.network.plant.phases)
+        settled = self._settle(self.place, everything)
+        unsettled = everything
+        for method in (self._in_turn, self._together, self._one_in_another, self._one_in_another):
+            unsettled = self._unsettled(settled, unsettled)
+            if not unsettled.size:
+                return settled
+            self.free[self.galleries :, unsettled] |= self.seen_open[:, unsettled]
+            method(unsettled)
+            settled.put(unsettled, self._settle(self.place[:, unsettled], unsettled))
+        settled.converged[self._unsettled(settled, unsettled)] = False
+        return settled
+
+    def _unsettled(self, settled: Settled, rows: Integers) -> Integers:
+        """Those of some phases in which an unknown is not where it should be."""
+        excess = self._excess(self.place[:, rows], settled, rows, rows)
+        off = np.abs(excess).max(axis=0, initial=0.0) > STILL
+        return rows[off | settled.throttled.open_way[:, rows].any(axis=0)]
+
+    def _in_turn(self, rows: Integers) -> None:
+        """Find each unknown by itself, one after the other, in place."""
+        for number, free in enumerate(self.free):
+            these = rows[free[rows]]
             if these.size:
-                self._root(positions.gallery[number], these, (0.0, 1.0), self._gallery_excess(number, positions))
-        for number, open_way in enumerate(settled.throttled.open_way):
-            known = ~np.isnan(positions.spool[number])
-            these = rows[(open_way | known)[rows]]
-            if these.size:
-                positions.spool[number, these] = 1.0
-                bounds = (LEAST_OPENING, 1.0)
-                self._root(positions.spool[number], these, bounds, self._speed_excess(number, positions))
+                self.place[:, these] = self._nested([number], self.place[:, these], these)
 
-    def _root(
-        self, values: Array, rows: Integers, bounds: tuple[float, float], excess: Callable[[Array, Integers], Array]
-    ) -> None:
-        """Put the root of `excess` over one unknown into its values, in place."""
-        low, high = (np.full(len(rows), bound) for bound in bounds)
-        found = elementwise.find_root(excess, (low, high), args=(rows,), tolerances=TOLERANCES)
-        ends = excess(high, rows)
-        values[rows] = np.where(found.success, found.x, np.where(ends <= 0, high, low))
+    def _one_in_another(self, rows: Integers) -> None:
+        """Find all unknowns of each phase, every one with those behind it found anew at each of its trials, in place."""
+        patterns, which = np.unique(self.free[:, rows], axis=1, return_inverse=True)
+        for number, pattern in enumerate(patterns.T):
+            these = rows[which.reshape(-1) == number]
+            self.place[:, these] = self._nested(np.flatnonzero(pattern).tolist(), self.place[:, these], these)
 
-    def _gallery_excess(self, number: int, positions: Positions) -> Callable[[Array, Integers], Array]:
-        def excess(value: Array, rows: Integers) -> Array:
-            rows = np.asarray(rows, np.intp)
-            trial = positions.take(rows)
-            trial.gallery[number] = value
-            return self._found(number, self._settle_at(trial, rows), rows) - value
+    def _nested(self, numbers: list[int], place: Array, rows: Integers) -> Array:
+        """Places with some unknowns, free in all the phases given, at their roots."""
+        if not numbers:
+            return place
+        first, *rest = numbers
 
-        return excess
+        def excess(value: Array, at: Array) -> Array:
+            at = at.astype(np.intp)
+            trial = place[:, at]
+            trial[first] = value
+            trial = self._nested(rest, trial, rows[at])
+            return self._excess(trial, self._settle(trial, rows[at]), rows[at])[first]
 
-    def _speed_excess(self, number: int, positions: Positions) -> Callable[[Array, Integers], Array]:
-        branch = self.network.paths[number].branch
+        low, high = np.full(rows.size, 0.0 if first < self.galleries else LEAST_OPENING), np.ones(rows.size)
+        found = elementwise.find_root(excess, (low, high), args=(np.arange(rows.size),), tolerances=TOLERANCES)
+        place = place.copy()
+        place[first] = np.where(found.success, found.x, high)
+        return self._nested(rest, place, rows)
 
-        def excess(value: Array, rows: Integers) -> Array:
-            rows = np.asarray(rows, np.intp)
-            trial = positions.take(rows)
-            trial.spool[number] = value
-            flow = self._settle_at(trial, rows).state.flow[branch]
-            return flow / self.network.branches.high[branch, rows] - 1.0
+    def _together(self, rows: Integers) -> None:
+        """Newton steps of all unknowns of some phases, in place."""
+        place = self.place[:, rows]
+        for _ in range(NEWTON_STEPS):
+            if not rows.size:
+                return
+            excess = self._excess(place, self._settle(place, rows), rows)
+            worst = np.abs(excess).max(axis=0, initial=0.0)
+            going = worst > 0.1 * STILL
+            if not going.any():
+                return
+            rows, place, excess, worst = rows[going], place[:, going], excess[:, going], worst[going]
+            step = self._newton_step(place, excess, rows)
+            for halving in range(HALVINGS):
+                trial = np.clip(place + step * 0.5**halving, LEAST_OPENING * (np.arange(len(place)) >= self.galleries)[:, None], 1.0)
+                after = np.abs(self._excess(trial, self._settle(trial, rows), rows)).max(axis=0, initial=0.0)
+                better = after < worst
+                place[:, better], worst[better] = trial[:, better], after[better]
+                step[:, better] = 0.0
+                if better.all():
+                    break
+            self.place[:, rows] = place
 
-        return excess
+    def _newton_step(self, place: Array, excess: Array, rows: Integers) -> Array:
+        """Step [-] of every unknown, shape (unknowns, phases)."""
+        unknowns, phases = place.shape
+        slopes = np.zeros((phases, unknowns, unknowns))
+        slopes[:] = np.eye(unknowns)
+        for number in np.flatnonzero(self.free[:, rows].any(axis=1)):
+            free = self.free[number, rows]
+            change = np.where(place[number] > 0.5, -DIFFERENCE, DIFFERENCE) * free
+            trial = place.copy()
+            trial[number] += change
+            moved = self._excess(trial, self._settle(trial, rows), rows) - excess
+            column = moved / np.where(free, change, 1.0)
+            slopes[free, :, number] = column[:, free].T
+            fixed = ~self.free[:, rows].T & free[:, None]
+            slopes[:, :, number][fixed] = 0.0
+        return -np.linalg.solve(slopes, excess.T[:, :, None])[:, :, 0].T
 
-    def _found(self, number: int, settled: Settled, rows: Integers) -> Array:
-        """What a gallery passes [-] with the spools where a solution needs them, for phases `rows`."""
-        gallery = self.network.galleries[number]
-        return gallery.conductance(
-            np.stack([self.allowed[s][rows] * self.share(s, settled) for s in gallery.sections])
-        )
+    def _settle(self, place: Array, rows: Integers) -> Settled:
+        """Solve some phases with galleries and spools at trial places."""
+        settled = settle(self._placed(self.network.branches.take(rows), place, rows), self.around.take(rows))
+        free = self.free[self.galleries :, rows]
+        settled.throttled.open_way[free] = False
+        self.seen_open[:, rows] |= settled.throttled.open_way
+        settled.throttled.share[free] = place[self.galleries :][free]
+        return settled
+
+    def _placed(self, branches: Branches, place: Array, rows: Integers) -> Branches:
+        """The network with its galleries and free spools at given places."""
+        quadratic, high, opened = branches.quadratic.copy(), branches.high.copy(), branches.open.copy()
+        number = {(item.component, item.role): k for k, item in enumerate(branches.items)}
+        for gallery, value in zip(self.network.galleries, place, strict=False):
+            k = number[(gallery.name, "gallery")]
+            opened[k] = value > 0
+            quadratic[k] = gallery.neutral / np.where(value > 0, value, 1.0) ** 2
+        moves = zip(self.network.paths, place[self.galleries :], self.free[self.galleries :, rows], strict=True)
+        for path, value, free in moves:
+            for edge in (path.feed, path.back):
+                if edge >= 0:
+                    quadratic[edge] /= np.where(free, value, 1.0) ** 2
+            high[path.branch] = np.where(free, np.inf, high[path.branch])
+        return replace(branches, quadratic=quadratic, high=high, open=opened)
+
+    def _excess(self, place: Array, settled: Settled, rows: Integers, at: Integers | slice = slice(None)) -> Array:
+        """What each free unknown is off by [-], shape (unknowns, phases); `at` are the rows' places in the solution.
+
+        Of a gallery, what the spools leave it less what it was taken to pass; of a spool, the speed over that asked,
+        less 1, unless it falls short wide open.
+        """
+        excess = np.zeros(place.shape)
+        for number, gallery in enumerate(self.network.galleries):
+            openings = np.stack([self.allowed[s][rows] * self.share(s, settled)[at] for s in gallery.sections])
+            excess[number] = gallery.conductance(openings) - place[number]
+        for number, path in enumerate(self.network.paths, self.galleries):
+            asked = self.network.branches.high[path.branch, rows]
+            over = settled.state.flow[path.branch, at] / np.where(np.isfinite(asked), asked, 1.0) - 1.0
+            excess[number] = np.where((place[number] >= 1.0) & (over < 0), 0.0, over)
+        return np.where(self.free[:, rows], excess, 0.0)
 
     def share(self, section: str, settled: Settled) -> Array:
         """Opening of a spool [-] as a share of the allowed one, shape of the solution's phases."""
@@ -171,31 +209,3 @@ class Spools:
             if self.network.actuators[path.actuator].row.section == section:
                 share = np.minimum(share, settled.throttled.share[number])
         return share
-
-    def _settle(self, positions: Positions, rows: Integers) -> Settled:
-        return self._settle_at(positions.take(rows), rows)
-
-    def _settle_at(self, trial: Positions, rows: Integers) -> Settled:
-        """Solve some phases with galleries and spools at trial positions."""
-        branches = _placed(self.network, self.network.branches.take(rows), trial)
-        settled = settle(branches, self.around.take(rows))
-        solved = ~np.isnan(trial.spool)
-        settled.throttled.share[solved] = trial.spool[solved]
-        return settled
-
-
-def _placed(network: Network, branches: Branches, at: Positions) -> Branches:
-    """A network with its galleries and solved spools at given positions."""
-    quadratic, high, opened = branches.quadratic.copy(), branches.high.copy(), branches.open.copy()
-    number = {(item.component, item.role): k for k, item in enumerate(branches.items)}
-    for gallery, value in zip(network.galleries, at.gallery, strict=True):
-        k = number[(gallery.name, "gallery")]
-        opened[k] = value > 0
-        quadratic[k] = gallery.neutral / np.where(value > 0, value, 1.0) ** 2
-    for path, value in zip(network.paths, at.spool, strict=True):
-        solved = ~np.isnan(value)
-        for edge in (path.feed, path.back):
-            if edge >= 0:
-                quadratic[edge] = np.where(solved, quadratic[edge] / np.where(solved, value, 1.0) ** 2, quadratic[edge])
-        high[path.branch] = np.where(solved, np.inf, high[path.branch])
-    return replace(branches, quadratic=quadratic, high=high, open=opened)

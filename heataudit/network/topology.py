@@ -61,7 +61,7 @@ class Topology:
 
 def analyse(branches: Branches) -> Topology:
     """Find the patterns of a batch and fold each into chains."""
-    feeds = np.array([i.flow != 0 for i in branches.injections], bool).reshape(len(branches.injections), -1)
+    feeds = np.array([i.flow != 0 for i in branches.injections], bool).reshape(-1, branches.phases)
     signature = np.concatenate([branches.open, feeds])
     packed = np.packbits(signature, axis=0)
     _, first, inverse = np.unique(packed, axis=1, return_index=True, return_inverse=True)
@@ -127,8 +127,21 @@ def _prune(branches: Branches, opened: NDArray[np.bool_], feeds: NDArray[np.bool
             if node and not _passes(ways_in[node], ways_out[node])
         ]
         if not dead:
-            return alive
+            return alive & _is_joined(branches, alive, feeds)
         alive[dead] = False
+
+
+def _is_joined(branches: Branches, alive: NDArray[np.bool_], feeds: NDArray[np.bool_]) -> NDArray[np.bool_]:
+    """Branches that hang together with the tank or a pump; nothing drives oil through the others."""
+    around: dict[int, set[int]] = defaultdict(set)
+    for k in np.flatnonzero(alive):
+        around[int(branches.start[k])].add(int(branches.end[k]))
+        around[int(branches.end[k])].add(int(branches.start[k]))
+    joined = reached(around, 0)
+    for injection, on in zip(branches.injections, feeds, strict=True):
+        if on:
+            joined |= reached(around, injection.node)
+    return np.isin(branches.start, list(joined))
 
 
 def _passes(ways_in: set[object], ways_out: set[object]) -> bool:
