@@ -27,6 +27,7 @@ def check_cycle(cycle: CycleSheet, sheets: Sheets, ports: Ports) -> None:
     for actuator in sheets["actuators"].frame.itertuples(index=False):
         if actuator.name:
             _check_loads(cycle, actuator)
+            _check_plunger(cycle, actuator)
             _check_speeds(cycle, actuator)
             _check_paths(cycle, actuator, sheets, ports)
     _check_shared_sections(cycle, sheets)
@@ -83,6 +84,21 @@ def _check_loads(cycle: CycleSheet, actuator: Any) -> None:
         cycle.sheet.complain(key, rows, lambda row: (
             f'is "{moves[row]}" without a load; give "{name} load", 0 where there is none'
         ))  # fmt: skip
+
+
+def _check_plunger(cycle: CycleSheet, actuator: Any) -> None:
+    """An extending plunger has no outlet whose oil could brake a load that drives it."""
+    if actuator.kind != "plunger":
+        return
+    extends = _moves(cycle, actuator.name) == "extend"
+    for quantity in ("load", "load_pressure"):
+        key = cycle.key(actuator.name, quantity)
+        if key is not None:
+            rows = np.flatnonzero(extends & (cycle.values(actuator.name, quantity) < 0))
+            unit_name = cycle.sheet.units[key].name
+            text = "and the plunger extends: nothing brakes a load that drives it; it must be at least 0"
+            told = [f"is {cycle.sheet.shown(key, row)} {unit_name}, {text}" for row in range(len(extends))]
+            cycle.sheet.complain(key, rows, told.__getitem__)
 
 
 def _check_speeds(cycle: CycleSheet, actuator: Any) -> None:

@@ -6,8 +6,18 @@ import re
 
 from heataudit.machine.units import units_of
 
+DASH_SIZES = (3, 4, 5, 6, 8, 10, 12, 16, 20, 24, 32)
+"""Dash sizes [1/16 in] of hoses in common use."""
+
 DASH_OF_DN = {6: 4, 8: 5, 10: 6, 12: 8, 16: 10, 20: 12, 25: 16, 32: 20, 40: 24, 50: 32}
 """Nominal diameters DN [mm] and the dash sizes [1/16 in] that they stand for."""
+
+TUBE_WALLS = {
+    6: (1, 1.5), 8: (1, 1.5, 2), 10: (1, 1.5, 2), 12: (1, 1.5, 2, 2.5), 14: (1.5, 2, 2.5), 15: (1, 1.5, 2),
+    16: (1.5, 2, 2.5, 3), 18: (1.5, 2), 20: (2, 2.5, 3, 4), 22: (1.5, 2, 2.5), 25: (2, 2.5, 3, 4, 5), 28: (2, 2.5, 3),
+    30: (2.5, 3, 4, 5), 35: (2, 2.5, 3, 4), 38: (3, 4, 5, 6), 42: (2, 3, 4),
+}  # fmt: skip
+"""Outside diameters [mm] of precision steel tubes and their walls [mm] in common use (EN 10305-4)."""
 
 FLOW_OF_NG = {6: 60, 10: 120, 16: 300, 25: 650}
 """Nominal sizes NG of directional valves and the flow [L/min] of one fully open path at 10 bar."""
@@ -22,7 +32,8 @@ def inside_diameter(size: str) -> float:
     """Inside diameter [m] of a nominal size: `-8` (dash size, 1/16 in), `DN20`, or `25x3` (tube, outside x wall in mm).
 
     A dash size is the inside diameter in sixteenths of an inch; a DN that stands for a dash size has its diameter,
-    another DN n is n mm; a tube's inside diameter is outside less two walls.
+    another DN n is n mm; a tube's inside diameter is outside less two walls. Common practice (ISO 4397 for DN, from
+    memory).
 
     Raises
     ------
@@ -68,3 +79,39 @@ def path_flow(size: str) -> float:
         known = ", ".join(f"NG{n}" for n in FLOW_OF_NG)
         raise ValueError(f"it must be one of {known}; for another size leave it blank and give the flow P-A")
     return FLOW_OF_NG[int(found[1])] * units_of("flow")["L/min"].factor
+
+
+def larger_sizes(size: str) -> tuple[str, ...]:
+    """Sizes of the same series with a larger bore, smallest first; none where the series ends.
+
+    A tube is followed by one tube for each larger outside diameter: the thinnest wall whose ratio to the outside
+    diameter, and with it the pressure that the tube bears, is not less.
+
+    Parameters
+    ----------
+    size
+        The size as it is written on a drawing.
+
+    Raises
+    ------
+    ValueError
+        The text is no size.
+
+    Examples
+    --------
+    >>> larger_sizes("-16"), larger_sizes("DN32"), larger_sizes("30x3")
+    (('-20', '-24', '-32'), ('DN40', 'DN50'), ('35x4', '38x4'))
+    """
+    bore = inside_diameter(size)
+    if found := TUBE.fullmatch(size.strip().replace(",", ".")):
+        outside, wall = float(found[1]), float(found[2])
+        series = []
+        for larger, walls in TUBE_WALLS.items():
+            bearing = [thickness for thickness in walls if thickness / larger >= wall / outside]
+            if larger > outside and bearing:
+                series.append(f"{larger}x{min(bearing):g}")
+    elif size.strip().startswith("-"):
+        series = [f"-{dash}" for dash in DASH_SIZES]
+    else:
+        series = [f"DN{nominal}" for nominal in DASH_OF_DN]
+    return tuple(candidate for candidate in series if inside_diameter(candidate) > bore)

@@ -190,7 +190,7 @@ class Spools:
         """What each free unknown is off by [-], shape (unknowns, phases); `at` are the rows' places in the solution.
 
         Of a gallery, what the spools leave it less what it was taken to pass; of a spool, the speed over that asked,
-        less 1, unless it falls short wide open.
+        less 1, unless it falls short wide open, or the load pushes its oil past the spool over a port relief.
         """
         excess = np.zeros(place.shape)
         for number, gallery in enumerate(self.network.galleries):
@@ -199,7 +199,8 @@ class Spools:
         for number, path in enumerate(self.network.paths, self.galleries):
             asked = self.network.branches.high[path.branch, rows]
             over = settled.state.flow[path.branch, at] / np.where(np.isfinite(asked), asked, 1.0) - 1.0
-            excess[number] = np.where((place[number] >= 1.0) & (over < 0), 0.0, over)
+            at_end = ((place[number] >= 1.0) & (over < 0)) | ((place[number] <= LEAST_OPENING) & (over > 0))
+            excess[number] = np.where(at_end, 0.0, over)
         return np.where(self.free[:, rows], excess, 0.0)
 
     def share(self, section: str, settled: Settled) -> Array:

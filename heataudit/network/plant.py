@@ -9,7 +9,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from heataudit.machine import TANK, Cycle, Machine, Move, Ports
+from heataudit.machine import TANK, Cycle, Machine, Move, Ports, Problem, WorkbookError
 from heataudit.network.linear import Array
 from heataudit.physics.air import standard_pressure
 from heataudit.physics.oil import Oil
@@ -40,6 +40,21 @@ class Command:
         return (self.forward | self.backward) & ~self.pressing
 
 
+def machine_oil(machine: Machine) -> Oil:
+    """The oil of a machine.
+
+    Raises
+    ------
+    WorkbookError
+        No viscosity curve belongs to what the sheet Oil says.
+    """
+    try:
+        return Oil.from_settings(**machine.oil)
+    except ValueError as error:
+        text = f'the oil has no viscosity curve: {error}; give "Viscosity at 40" and "Viscosity at 100" in its place'
+        raise WorkbookError([Problem("Oil", "", text)], machine.warnings) from error
+
+
 class Plant:
     """A machine, the phases to be solved and the state of its oil.
 
@@ -58,7 +73,7 @@ class Plant:
         self.cycle = cycle
         self.ports = ports
         self.phases = len(cycle.duration)
-        self.oil = Oil.from_settings(**machine.oil)
+        self.oil = machine_oil(machine)
         self.temperature = oil_temperature
         self.viscosity = self.oil.viscosity(oil_temperature)
         self.density = self.oil.density(oil_temperature)

@@ -37,7 +37,7 @@ class ComponentState:
     drop
         Pressure drop [Pa] from From to To, rise included; of a section that from P to the working port.
     heat
-        Heat [W] set free; of a section that of both edges; of a void source the power that it puts in, negative.
+        Heat [W] set free: flow times drop, lifting taken off; of a section that of both edges.
     return_heat
         The part of a section's heat [W] that its return edge sets free; 0 for other kinds.
     lifting

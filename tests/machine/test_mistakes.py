@@ -405,3 +405,11 @@ def test_whatever_is_typed_is_read_or_refused_in_words(tmp_path: Path, cells: di
         found = error.problems
     assert pumps == 1 or found
     assert all(len(problem.text) > 10 and "nan" not in problem.text.split() for problem in found)
+
+
+def test_a_driving_load_on_an_extending_plunger(tmp_path: Path) -> None:
+    cells = {("Actuators", "B2"): "plunger", ("Actuators", "E2"): None, ("Duty cycle", "D2"): -30}
+    assert problems(tmp_path, cells) == [
+        "Duty cycle!D2: Ram load is -30 kN, and the plunger extends: nothing brakes a load that drives it; "
+        "it must be at least 0"
+    ]
