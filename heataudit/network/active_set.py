@@ -102,7 +102,7 @@ class _Held:
         release_low, release_high = self.low & (self.excess < -EXACT), self.high & (self.excess > EXACT)
         pass_low, pass_high = free & (self.flow < el.low), free & (self.flow > el.high)
         settled = residual < 1e-6
-        wrong = (release_low | release_high | pass_low | pass_high).any(axis=0)
+        wrong = np.any(release_low | release_high | pass_low | pass_high, axis=0)
         self._let_go((release_low | release_high) & settled)
         self.low, self.high = self.low | pass_low, self.high | pass_high
         return residual, wrong

@@ -12,6 +12,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass, field, fields, replace
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -120,12 +121,13 @@ class Branches:
     def take(self, rows: NDArray[np.intp]) -> Branches:
         """The same network for some of the phases."""
         per_row = ("constant", "linear", "quadratic", "low", "high", "ratio", "gain", "open")
+        arrays: dict[str, Any] = {name: np.take(getattr(self, name), rows, axis=1) for name in per_row}
+        arrays |= {name: getattr(self, name)[rows] for name in ("flow_scale", "viscosity", "density")}
         return replace(
             self,
             items=tuple(i if i.line is None else replace(i, line=i.line.take(rows)) for i in self.items),
             injections=tuple(Injection(i.component, i.node, i.flow[rows]) for i in self.injections),
-            **{name: np.take(getattr(self, name), rows, axis=1) for name in per_row},
-            **{name: getattr(self, name)[rows] for name in ("flow_scale", "viscosity", "density")},
+            **arrays,
         )
 
 

@@ -10,6 +10,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass, fields, replace
 from functools import cached_property
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -24,8 +25,8 @@ LAMINAR_FLOW = 1e-6
 """Flow [-], as a share of the pump flow, below which a throttle is taken as linear, so that its slope stays finite."""
 
 LEAST_SLOPE = 1e-10
-"""Slope [-] that every law has at the least (100 bar per pump flow): without it a pump at its setting, or a load without
-a line or a spool, would be infinitely conductive. It costs at most 0.001 Pa at the whole pump flow."""
+"""Slope [-] that every law has at the least (100 bar per pump flow): without it a pump at its setting, or a load
+without a line or a spool, would be infinitely conductive. It costs at most 0.001 Pa at the whole pump flow."""
 
 NODE_LEAK = 1e-11
 """Leak [-] of every node to the tank (pump flow per 100 bar): it fixes the pressure behind a closed check."""
@@ -88,7 +89,7 @@ class Elements:
     def take(self, rows: Integers) -> Elements:
         """The same network for some rows of the batch."""
         per_row = ("ratio", "gain", "constant", "linear", "quadratic", "low", "high", "active", "injection")
-        arrays = {name: np.take(getattr(self, name), rows, axis=1) for name in per_row}
+        arrays: dict[str, Any] = {name: np.take(getattr(self, name), rows, axis=1) for name in per_row}
         taken = replace(self, flow_scale=self.flow_scale[rows], lines=self.lines.take(rows), **arrays)
         taken.__dict__["solver"] = self.solver
         return taken

@@ -87,11 +87,11 @@ def _components(network: Network, found: _Found) -> ComponentState:
         flow, drop = found.flow(valve.name, "valve"), found.drop(valve.name, "valve")
         rows.append((valve.name, valve.kind, flow, drop, flow * drop, nothing, nothing))
     for section in plant.rows_of("sections"):
-        feed = [found.flow(section.name, role) for role in ("P-A", "P-B")]
-        drop = [found.drop(section.name, role) for role in ("P-A", "P-B")]
+        flow = found.flow(section.name, "P-A") + found.flow(section.name, "P-B")
+        drop = found.drop(section.name, "P-A") + found.drop(section.name, "P-B")
         back = found.heat(section.name, "B-T") + found.heat(section.name, "A-T")
         heat = found.heat(section.name, "P-A") + found.heat(section.name, "P-B") + back
-        rows.append((section.name, "section", feed[0] + feed[1], drop[0] + drop[1], heat, back, nothing))
+        rows.append((section.name, "section", flow, drop, heat, back, nothing))
     others = [(g.name, "gallery") for g in network.galleries]
     others += [(b.component, "void") for b in network.branches.items if b.role == "void"]
     for name, kind in others:

@@ -27,6 +27,7 @@ class BatchedLU:
     """
 
     def __init__(self, size: int, entries: Iterable[tuple[int, int]]) -> None:
+        """Plan the elimination."""
         pattern = set(entries) | {(i, i) for i in range(size)}
         self.size = size
         self.order = _minimum_degree(size, pattern)

@@ -45,6 +45,7 @@ class Spools:
         self.allowed = {s: self._allowed(s) for gallery in network.galleries for s in gallery.sections}
         self.galleries = len(network.galleries)
         self.place = np.ones((self.galleries + len(network.paths), plant.phases))
+        self.least = np.where(np.arange(len(self.place)) < self.galleries, 0.0, LEAST_OPENING)
         self.free = np.zeros(self.place.shape, bool)
         self.seen_open = np.zeros((len(network.paths), plant.phases), bool)
         for number, gallery in enumerate(network.galleries):
@@ -96,7 +97,7 @@ class Spools:
                 self.place[:, these] = self._nested([number], self.place[:, these], these)
 
     def _one_in_another(self, rows: Integers) -> None:
-        """Find all unknowns of each phase, every one with those behind it found anew at each of its trials, in place."""
+        """Find all unknowns of each phase, those behind each found anew at every trial of it, in place."""
         patterns, which = np.unique(self.free[:, rows], axis=1, return_inverse=True)
         for number, pattern in enumerate(patterns.T):
             these = rows[which.reshape(-1) == number]
@@ -115,7 +116,7 @@ class Spools:
             trial = self._nested(rest, trial, rows[at])
             return self._excess(trial, self._settle(trial, rows[at]), rows[at])[first]
 
-        low, high = np.full(rows.size, 0.0 if first < self.galleries else LEAST_OPENING), np.ones(rows.size)
+        low, high = np.full(rows.size, self.least[first]), np.ones(rows.size)
         found = elementwise.find_root(excess, (low, high), args=(np.arange(rows.size),), tolerances=TOLERANCES)
         place = place.copy()
         place[first] = np.where(found.success, found.x, high)
@@ -135,7 +136,7 @@ class Spools:
             rows, place, excess, worst = rows[going], place[:, going], excess[:, going], worst[going]
             step = self._newton_step(place, excess, rows)
             for halving in range(HALVINGS):
-                trial = np.clip(place + step * 0.5**halving, LEAST_OPENING * (np.arange(len(place)) >= self.galleries)[:, None], 1.0)
+                trial = np.clip(place + step * 0.5**halving, self.least[:, None], 1.0)
                 after = np.abs(self._excess(trial, self._settle(trial, rows), rows)).max(axis=0, initial=0.0)
                 better = after < worst
                 place[:, better], worst[better] = trial[:, better], after[better]
@@ -159,7 +160,8 @@ class Spools:
             slopes[free, :, number] = column[:, free].T
             fixed = ~self.free[:, rows].T & free[:, None]
             slopes[:, :, number][fixed] = 0.0
-        return -np.linalg.solve(slopes, excess.T[:, :, None])[:, :, 0].T
+        steps = np.linalg.solve(slopes, excess.T[:, :, None])[:, :, 0].T
+        return np.asarray(-steps, float)
 
     def _settle(self, place: Array, rows: Integers) -> Settled:
         """Solve some phases with galleries and spools at trial places."""

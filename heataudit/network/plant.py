@@ -69,6 +69,7 @@ class Plant:
     """
 
     def __init__(self, machine: Machine, cycle: Cycle, ports: Ports, oil_temperature: Array) -> None:
+        """Oil at the given temperatures."""
         self.machine = machine
         self.cycle = cycle
         self.ports = ports

@@ -19,6 +19,7 @@ class Folding:
     """One way to fold a batch: which branch stands where, with which factors."""
 
     def __init__(self, branches: Branches, topology: Topology) -> None:
+        """Number the nodes and the places of lines."""
         self.branches = branches
         self.topology = topology
         self._number = {node: k for k, node in enumerate(topology.kept)} | {0: -1}
@@ -56,7 +57,7 @@ class Folding:
             rows = pattern.rows
             for chain, slot in zip(pattern.chains, pattern.slots, strict=True):
                 active[slot, rows] = True
-                free = iter(np.flatnonzero(element == slot))
+                free = iter(np.flatnonzero(element == slot).tolist())
                 a = b = 1.0
                 for k, sign in chain.items:
                     arrays["constant"][slot, rows] += b * sign * br.constant[k, rows]
@@ -94,7 +95,7 @@ class Folding:
         viscosity = elements.lines.viscosity.copy()
         for pattern in self.topology.patterns:
             for chain, slot in zip(pattern.chains, pattern.slots, strict=True):
-                free = iter(np.flatnonzero(elements.lines.element == slot))
+                free = iter(np.flatnonzero(elements.lines.element == slot).tolist())
                 for k, _ in chain.items:
                     if self.branches.items[k].line is not None:
                         rows = pattern.rows

@@ -13,7 +13,6 @@ from collections import defaultdict
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
 from heataudit.network.assemble import MovePath
 from heataudit.network.branches import Branches, Flags
@@ -69,7 +68,8 @@ def _throttle_path(
     factor = np.where(left_over, 1.0 + excess / np.maximum(feed + branches.gain[k, rows] * back, 1e-9), 1.0)
     result.share[number, rows] = 1.0 / np.sqrt(factor)
     state.drop[k, rows] -= np.where(left_over, excess, 0.0)
-    for edge, region, shift in ((path.feed, regions[0], (1.0 - factor) * feed), (path.back, regions[1], (factor - 1.0) * back)):
+    shifts = ((path.feed, regions[0], (1.0 - factor) * feed), (path.back, regions[1], (factor - 1.0) * back))
+    for edge, region, shift in shifts:
         if edge in alive:
             state.drop[edge, rows] *= factor
             for node in region:

@@ -16,6 +16,9 @@ from heataudit.physics.lines import line_drop
 
 Rows = NDArray[np.intp]
 
+NO_FLOW = 1e-10
+"""Flow [-], as a share of the pump flow, that the solver does not tell from none."""
+
 MOVES = ("forward", "backward")
 """Roles of the branches of actuators."""
 
@@ -65,7 +68,8 @@ class _ChainPoint:
     """Flow [m³/s] and multipliers [Pa] of one chain in some phases."""
 
     def __init__(self, point: Point, slot: int, rows: Rows, scale: Array) -> None:
-        self.flow = point.flow[slot, rows] * scale[rows]
+        flow = point.flow[slot, rows]
+        self.flow = np.where(np.abs(flow) < NO_FLOW, 0.0, flow) * scale[rows]
         self.z_low = point.z_low[slot, rows] * PRESSURE_SCALE
         self.z_high = point.z_high[slot, rows] * PRESSURE_SCALE
 

@@ -107,13 +107,13 @@ def _prune(branches: Branches, opened: NDArray[np.bool_], feeds: NDArray[np.bool
     forward_only = np.zeros(len(alive), bool)
     forward_only[one_way] = True
     while True:
-        ways_in = defaultdict(set)
-        ways_out = defaultdict(set)
+        ways_in: dict[int, set[object]] = defaultdict(set)
+        ways_out: dict[int, set[object]] = defaultdict(set)
         for injection, on in zip(branches.injections, feeds, strict=True):
             if on:
                 ways = ways_in if injection.flow[injection.flow != 0][0] > 0 else ways_out
                 ways[injection.node].add(("feed", injection.component))
-        for k in np.flatnonzero(alive):
+        for k in np.flatnonzero(alive).tolist():
             start, end = int(branches.start[k]), int(branches.end[k])
             ways_out[start].add(k)
             ways_in[end].add(k)
@@ -122,7 +122,7 @@ def _prune(branches: Branches, opened: NDArray[np.bool_], feeds: NDArray[np.bool
                 ways_out[end].add(k)
         dead = [
             k
-            for k in np.flatnonzero(alive)
+            for k in np.flatnonzero(alive).tolist()
             for node in (int(branches.start[k]), int(branches.end[k]))
             if node and not _passes(ways_in[node], ways_out[node])
         ]
@@ -165,9 +165,9 @@ def _junctions(branches: Branches, alive: NDArray[np.bool_], feeds: NDArray[np.b
 def _chains(branches: Branches, alive: NDArray[np.bool_], kept: set[int]) -> tuple[Chain, ...]:
     """Fold the living branches of one pattern into chains between kept nodes."""
     around: dict[int, list[int]] = defaultdict(list)
-    for k in np.flatnonzero(alive & branches.foldable):
-        around[int(branches.start[k])].append(int(k))
-        around[int(branches.end[k])].append(int(k))
+    for number in np.flatnonzero(alive & branches.foldable).tolist():
+        around[int(branches.start[number])].append(number)
+        around[int(branches.end[number])].append(number)
     ends = {0} | kept
     used: set[int] = set()
     chains: list[Chain] = []
@@ -188,9 +188,9 @@ def _chains(branches: Branches, alive: NDArray[np.bool_], kept: set[int]) -> tup
             chain = _oriented(branches, node, here, tuple(items))
             if chain is not None:
                 chains.append(chain)
-    for k in np.flatnonzero(alive & ~branches.foldable):
-        item = branches.items[k]
-        chains.append(Chain(Ends(item.start, item.end, *item.driving_nodes), ((int(k), 1),)))
+    for number in np.flatnonzero(alive & ~branches.foldable).tolist():
+        item = branches.items[number]
+        chains.append(Chain(Ends(item.start, item.end, *item.driving_nodes), ((number, 1),)))
     return tuple(chains)
 
 

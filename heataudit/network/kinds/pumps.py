@@ -13,7 +13,7 @@ from heataudit.physics.pumps import slip_coefficient, viscosity_ratio
 
 
 def speed(pump: Any, plant: Plant) -> Array:
-    """Speed [1/s] of a pump in each phase, shape (phases,): the cycle's, else its drive's by the ratio, else its own."""
+    """Speed [1/s] of a pump, shape (phases,): the cycle's, else its drive's by the ratio, else its own."""
     own = np.full(plant.phases, float(pump.speed))
     if pump.drive:
         of_drive = plant.given(pump.drive, "speed", plant.drive_speed(pump.drive)) * pump.speed_ratio

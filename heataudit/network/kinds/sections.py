@@ -83,7 +83,8 @@ def galleries(plant: Plant) -> list[Gallery]:
         first = rows.iloc[0]
         found.append(
             Gallery(
-                f"{first['bank']} gallery", tuple(rows["name"]), (plant.node(first["port_p"]), plant.node(first["port_n"])),
+                f"{first['bank']} gallery", tuple(rows["name"]),
+                (plant.node(first["port_p"]), plant.node(first["port_n"])),
                 np.asarray(throttle_coefficient(rows["bypass"].to_numpy(float), rows["rated_drop"].to_numpy(float))),
                 rows["bypass_closed_at"].to_numpy(float),
             )
