@@ -44,7 +44,7 @@ def solve(machine: Machine, cycle: Cycle, oil_temperature: Array) -> Solution:
         _solve_batch(machine, cycle, ports, oil_temperature, first[start : start + CHUNK])
         for start in range(0, len(first), CHUNK)
     ]
-    return spread_phases(join(parts), again)
+    return spread_phases(_without_idle_voids(join(parts)), again)
 
 
 def _solve_batch(
@@ -69,6 +69,20 @@ def _operating_points(cycle: Cycle, oil_temperature: Array) -> tuple[Integers, I
     place = np.empty_like(order)
     place[order] = np.arange(len(order))
     return first[order], place[again.reshape(-1)]
+
+
+def _without_idle_voids(solution: Solution) -> Solution:
+    """Void sources are named only where one is used."""
+    components = solution.components
+    kept = [c for c, kind in enumerate(components.kind) if kind != "void" or components.flow[c].any()]
+    arrays = ("flow", "drop", "heat", "return_heat", "lifting")
+    components = replace(
+        components,
+        name=tuple(components.name[c] for c in kept),
+        kind=tuple(components.kind[c] for c in kept),
+        **{name: getattr(components, name)[kept] for name in arrays},
+    )
+    return replace(solution, components=components)
 
 
 def join(parts: list[Solution]) -> Solution:
