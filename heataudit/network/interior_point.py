@@ -122,9 +122,7 @@ class _Iterate:
         """Step towards law and node balance and the wanted changes of the products z s."""
         low = np.where(self.has_low, low / self.s_low, 0.0)
         high = np.where(self.has_high, high / self.s_high, 0.0)
-        dq, dp = self.elements.direction(
-            factors, conductance, low - high - self.law_residual, -self.node_residual
-        )
+        dq, dp = self.elements.direction(factors, conductance, low - high - self.law_residual, -self.node_residual)
         dz_low = low - self.z_low / self.s_low * dq
         dz_high = high + self.z_high / self.s_high * dq
         return dq, dp, dq, dz_low, dz_high

@@ -134,5 +134,3 @@ def _start(branches: Branches, topology: Topology, highest: Array) -> Array:
         if node in pumps:
             start[number] = START_SHARE * highest / PRESSURE_SCALE
     return start
-
-

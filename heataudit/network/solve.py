@@ -47,9 +47,7 @@ def solve(machine: Machine, cycle: Cycle, oil_temperature: Array) -> Solution:
     return spread_phases(_without_idle_voids(join(parts)), again)
 
 
-def _solve_batch(
-    machine: Machine, cycle: Cycle, ports: Ports, oil_temperature: Array, rows: Integers
-) -> Solution:
+def _solve_batch(machine: Machine, cycle: Cycle, ports: Ports, oil_temperature: Array, rows: Integers) -> Solution:
     """Assemble, solve, extract."""
     plant = Plant(machine, cycle.take(rows), ports, oil_temperature[rows])
     network = assemble(plant)

@@ -36,9 +36,7 @@ class Throttled:
     open_way: Flags
 
 
-def throttle(
-    branches: Branches, topology: Topology, paths: tuple[MovePath, ...], state: Spread
-) -> Throttled:
+def throttle(branches: Branches, topology: Topology, paths: tuple[MovePath, ...], state: Spread) -> Throttled:
     """Move what is left over at the actuators to the edges of their spools, in place."""
     result = Throttled(np.ones((len(paths), branches.phases)), np.zeros((len(paths), branches.phases), bool))
     for pattern in topology.patterns:

@@ -121,9 +121,7 @@ def _owners(
 
 def _drop(branches: Branches, k: int, rows: Rows, flow: Array, viscosity_factor: Array) -> Array:
     """Drop [Pa] of a branch at a flow [m³/s] by its law."""
-    drop = branches.constant[k, rows] + flow * (
-        branches.linear[k, rows] + branches.quadratic[k, rows] * np.abs(flow)
-    )
+    drop = branches.constant[k, rows] + flow * (branches.linear[k, rows] + branches.quadratic[k, rows] * np.abs(flow))
     shape = branches.items[k].line
     if shape is not None:
         friction, _ = line_drop(

@@ -53,7 +53,9 @@ class _Maker:
                     ["Pressure-viscosity coefficient", float(self.rng.choice([0, 20])), "1/GPa"]],
             "Reservoir": [SETTINGS, ["Oil volume", 200, "L"]],
             "Pumps": pumps,
-            "Lines": [["Line", "From", "To", "Inside diameter [mm]", "Length [m]", "Bends [-]", "Rise [m]"], *self.lines],
+            "Lines": [
+                ["Line", "From", "To", "Inside diameter [mm]", "Length [m]", "Bends [-]", "Rise [m]"], *self.lines
+            ],
             "Valves": [["Valve", "Kind", "From", "To", "Rated flow [L/min]", "Opening pressure [bar]",
                         "Set flow [L/min]"], *self.valves],
             "Directional valves": [["Section", "Bank", "P-A [L/min]", "A-T [L/min]", "Centre"], *self.sections],
@@ -74,7 +76,16 @@ class _Maker:
         )
 
     def _pumps(self) -> list[list[Any]]:
-        header = ["Pump", "Type", "Control", "Displacement [cm³/rev]", "Speed [rpm]", "Setting [bar]", "Outlet", "Suction"]
+        header = [
+            "Pump",
+            "Type",
+            "Control",
+            "Displacement [cm³/rev]",
+            "Speed [rpm]",
+            "Setting [bar]",
+            "Outlet",
+            "Suction",
+        ]
         rows = []
         for number in range(int(self.rng.integers(1, 4))):
             control = "fixed" if self.chance(0.5) else "pressure compensated"
@@ -102,7 +113,9 @@ class _Maker:
         """What may lie between a section and its actuator."""
         if self.chance(0.5):
             junction = f"{actuator_port} x"
-            self._line(section_port, junction if self.chance(0.3) else actuator_port, float(self.rng.choice([10, 12, 16])))
+            self._line(
+                section_port, junction if self.chance(0.3) else actuator_port, float(self.rng.choice([10, 12, 16]))
+            )
             if self.lines[-1][2] == junction:
                 self._valve("throttle", junction, actuator_port)
                 if self.chance(0.7):
@@ -116,7 +129,9 @@ class _Maker:
         name, section = f"Function {number}", f"Section {number}"
         kind = str(self.rng.choice(["cylinder", "cylinder", "plunger", "double rod", "motor", "constant pressure"]))
         flow = self.between(20, 250)
-        self.sections.append([section, bank, flow, flow * float(self.rng.choice([1, 0.5])), str(self.rng.choice(["closed", "open"]))])
+        self.sections.append(
+            [section, bank, flow, flow * float(self.rng.choice([1, 0.5])), str(self.rng.choice(["closed", "open"]))]
+        )
         rodded = kind in ("cylinder", "double rod")
         leak = None if kind == "constant pressure" else float(self.rng.choice([100, 96]))
         self.actuators.append([
