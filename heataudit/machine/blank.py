@@ -73,9 +73,8 @@ def _write_guide(book: Workbook) -> None:
     for row in range(2, sheet.max_row + 1):
         sheet.cell(row, 1).font = Font(bold=True, color=INK)
     for command in COMMANDS:
-        not_yet = "" if command.computed else " Not computed yet."
         name = f"<{command.table.capitalize()[:-1]}> {command.quantity}{_units_of(command)}"
-        sheet.append(["", f"{name}: {command.help}{not_yet}"])
+        sheet.append(["", f"{name}: {command.help}"])
     sheet.append([])
     for table in TABLES:
         sheet.append([table.sheet, table.help])
@@ -161,10 +160,6 @@ def remark(column: Column) -> str:
     parts = [column.help]
     if column.words and column.holds == "word":
         parts.append(f"One of {', '.join(column.words)}.")
-    if column.not_yet:
-        parts.append(f"Not computed yet: {', '.join(column.not_yet)}.")
-    if not column.computed:
-        parts.append("Not computed yet.")
     if column.only_for:
         parts.append(f"Only for {one_of(list(column.only_for))}.")
     if column.must and column.default is None:
@@ -222,8 +217,8 @@ def _add_list(sheet: Worksheet, column: Column, cells: str) -> None:
         return
     from openpyxl.worksheet.datavalidation import DataValidation
 
-    validation = DataValidation("list", formula1=f'"{",".join(column.usable_words)}"', allow_blank=True)
-    validation.errorTitle, validation.error = column.header, f"Choose {one_of(list(column.usable_words))}."
+    validation = DataValidation("list", formula1=f'"{",".join(column.words)}"', allow_blank=True)
+    validation.errorTitle, validation.error = column.header, f"Choose {one_of(list(column.words))}."
     sheet.add_data_validation(validation)
     validation.add(cells)
 

@@ -36,8 +36,6 @@ def _row(column: Column) -> str:
         parts.append(f"One of {', '.join(column.words)}.")
     if column.only_for:
         parts.append(f"Only for {', '.join(column.only_for)}.")
-    if not column.computed:
-        parts.append("Not computed yet.")
     return _cells(column.header, unit_name, default, " ".join(parts))
 
 

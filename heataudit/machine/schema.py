@@ -51,8 +51,7 @@ class Column:
     """A column of a table, or an item of a settings sheet.
 
     Bounds are in the default unit. `only_for` names the words of the column `by` for which a cell is used at all (none:
-    for every row); a `must` is asked of those rows only. A default is one for all, or one for each word of `by`. Words
-    in `not_yet` belong to the workbook but are not computed; with `computed` False that is so for the whole column.
+    for every row); a `must` is asked of those rows only. A default is one for all, or one for each word of `by`.
     `refers_to` names the tables whose components a reference may name. A `bare` number has no unit in its header.
     `missing` says what else may be given in the place of a `must`, `instead` is the key of a column that stands for it.
     """
@@ -70,14 +69,12 @@ class Column:
     whole: bool = False
     among: tuple[float, ...] = ()
     words: tuple[str, ...] = ()
-    not_yet: tuple[str, ...] = ()
     by: str = "kind"
     only_for: tuple[str, ...] = ()
     must: bool = False
     missing: str = ""
     instead: str = ""
     default: Default | Mapping[str, Default] | None = None
-    computed: bool = True
     refers_to: tuple[str, ...] = ()
 
     @cached_property
@@ -110,11 +107,6 @@ class Column:
     def unit_of(self, text: str | None) -> Unit:
         """The unit that a header or a unit cell names; the default unit where it names none."""
         return self.unit if text is None else unit(text, self.dimension)
-
-    @property
-    def usable_words(self) -> tuple[str, ...]:
-        """Allowed words that this version computes."""
-        return tuple(word for word in self.words if word not in self.not_yet)
 
     def default_for(self, word: str) -> Default | None:
         """The default of a row whose column `by` holds a word."""

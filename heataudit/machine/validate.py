@@ -14,7 +14,7 @@ from heataudit.machine.units import one_of
 
 
 def check_cells(sheet: Sheet) -> None:
-    """Note every typed cell outside its bounds, every unknown word, and what this version does not compute."""
+    """Note every typed cell outside its bounds, every unknown word, and those that are not used."""
     failing = _failures(sheet)
     for key, rows in failing.items():
         column = sheet.columns[key]
@@ -24,12 +24,6 @@ def check_cells(sheet: Sheet) -> None:
             sheet.complain(key, rows, partial(_out_of_bounds, sheet, column))
     for key, column in sheet.columns.items():
         typed = sheet.is_typed(key)
-        if column.not_yet:
-            used = np.isin(sheet.frame[key].to_numpy(object), list(column.not_yet))
-            sheet.complain(key, np.flatnonzero(used), partial(_not_yet, sheet, column))
-        if not column.computed:
-            text = "is given, which this version does not compute yet; leave it blank"
-            sheet.complain(key, np.flatnonzero(typed), text)
         if column.only_for:
             words = sheet.frame[column.by].to_numpy(object)
             idle = typed & ~np.isin(words, column.only_for) & np.isin(words, sheet.columns[column.by].words)
@@ -73,15 +67,8 @@ def _out_of_bounds(sheet: Sheet, column: Column, row: int) -> str:
 
 def _unknown_word(sheet: Sheet, column: Column, row: int) -> str:
     typed = sheet.frame[column.key].iloc[row]
-    advice = nearest(typed, column.usable_words)
-    return f'is "{typed}"; it must be {one_of(list(column.usable_words), chr(34))}{advice}'
-
-
-def _not_yet(sheet: Sheet, column: Column, row: int) -> str:
-    return (
-        f'is "{sheet.frame[column.key].iloc[row]}", which this version does not compute yet; '
-        f"use {one_of(list(column.usable_words), chr(34))}"
-    )
+    advice = nearest(typed, column.words)
+    return f'is "{typed}"; it must be {one_of(list(column.words), chr(34))}{advice}'
 
 
 def _not_used(sheet: Sheet, column: Column, row: int) -> str:

@@ -5,29 +5,21 @@ from __future__ import annotations
 from collections import defaultdict
 from collections.abc import Iterator
 from dataclasses import dataclass, replace
-from typing import Any, NamedTuple
+from typing import Any
 
 import numpy as np
 
-from heataudit.network.branches import Branch, Branches, Injection, stack
+from heataudit.network.branches import Branch, Branches, Injection, MovePath, stack
 from heataudit.network.kinds import lines, pumps, sections, valves, voids
 from heataudit.network.kinds.actuators import Actuator
-from heataudit.network.kinds.sections import Gallery
+from heataudit.network.kinds.sections import Banks
 from heataudit.network.linear import Array
 from heataudit.network.plant import Plant
 from heataudit.network.topology import reached
+from heataudit.network.unknowns import Unknown
 
 SOME_FLOW = 1e-3 / 60
 """Flow [m³/s] to scale a phase by in which no pump runs: 1 L/min."""
-
-
-class MovePath(NamedTuple):
-    """Branches that an actuator's move uses in one direction: its own and those of its section, -1 where none."""
-
-    actuator: int
-    branch: int
-    feed: int
-    back: int
 
 
 @dataclass(frozen=True)
@@ -37,14 +29,17 @@ class Network:
     plant: Plant
     branches: Branches
     actuators: tuple[Actuator, ...]
-    galleries: tuple[Gallery, ...]
+    banks: Banks
     paths: tuple[MovePath, ...]
+    unknowns: tuple[Unknown, ...]
     highest_setting: Array
 
 
 def assemble(plant: Plant) -> Network:
-    """Make the branches of every component of a machine."""
+    """Make the branches and unknowns of every component of a machine."""
     working = _working_nodes(plant)
+    actuators = tuple(Actuator(row, plant) for row in plant.rows_of("actuators"))
+    banks = sections.banks(plant, actuators)
     items: list[Branch] = []
     injections: list[Injection] = []
     for pump in plant.rows_of("pumps"):
@@ -52,22 +47,23 @@ def assemble(plant: Plant) -> Network:
         items += more
         injections += feeds
     items += [lines.make(line, plant) for line in plant.rows_of("lines")]
-    items += [_maybe_lazy(valves.make(valve, plant), valve.kind, working) for valve in plant.rows_of("valves")]
-    for section in plant.rows_of("sections"):
-        items += sections.make(section, plant)
-    galleries = tuple(sections.galleries(plant))
-    items += [gallery.branch() for gallery in galleries]
-    actuators = tuple(Actuator(row, plant) for row in plant.rows_of("actuators"))
+    for valve in plant.rows_of("valves"):
+        items += [_maybe_lazy(branch, valve.kind, working) for branch in valves.make(valve, plant)]
+    items += banks.branches()
     for actuator in actuators:
         items += actuator.branches()
     items += voids.make(plant)
-    branches = stack(items, injections, len(plant.ports), (plant.viscosity, plant.density), _flow_scale(plant))
-    paths = tuple(_paths(branches, actuators))
-    return Network(plant, branches, actuators, galleries, paths, _highest_setting(plant))
+    branches = stack(items, injections, plant.node_count, (plant.viscosity, plant.density), _flow_scale(plant))
+    number = {(branch.component, branch.role): k for k, branch in enumerate(items)}
+    unknowns = [
+        *pumps.unknowns(plant, banks.sections, number), *banks.unknowns(number),
+        *valves.unknowns(plant, banks.sections, number),
+    ]  # fmt: skip
+    paths = tuple(_paths(number, actuators))
+    return Network(plant, branches, actuators, banks, paths, tuple(unknowns), _highest_setting(plant))
 
 
-def _paths(branches: Branches, actuators: tuple[Actuator, ...]) -> Iterator[MovePath]:
-    number = {(branch.component, branch.role): k for k, branch in enumerate(branches.items)}
+def _paths(number: dict[tuple[str, str], int], actuators: tuple[Actuator, ...]) -> Iterator[MovePath]:
     for a, actuator in enumerate(actuators):
         section = actuator.row.section
         for direction, feed, back in (("forward", "P-A", "B-T"), ("backward", "P-B", "A-T")):

@@ -2,7 +2,9 @@
 
 A branch is what a component is to the solver: where its flow goes, and the pressure drop that it needs,
 
-    constant + linear q + quadratic q |q| (+ the friction of a line),   low <= q <= high.
+    constant + linear q + quadratic q |q| (+ the friction of a line),   low <= q <= high,
+
+and at least -power / q where a power limits a pump.
 
 Component kinds (the modules in `network.kinds`) make `Branch` objects; `stack` lays them out as arrays of shape
 (branches, phases) in SI units.
@@ -12,7 +14,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass, field, fields, replace
-from typing import Any
+from typing import Any, NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -47,7 +49,9 @@ class Branch:
 
     `ratio` is the flow at the end per flow at the start [-], `gain` the weight [-] of the pressure at the end: the
     area ratio of a cylinder, else 1. A pump's slip and its displacement box are driven by other nodes than those
-    that they connect (`driven_from`, `driven_to`). A `lazy` branch is left out until the pressures would open it.
+    that they connect (`driven_from`, `driven_to`). A `lazy` branch is left out until the pressures would open it, or until the pressure
+    of the node `pilot` lifts it (`pilot_ratio` x pilot pressure against the pressure from end to start); then it stands
+    in the place of the component's branch of the role `replaces`.
     """
 
     component: str
@@ -57,6 +61,7 @@ class Branch:
     constant: Value = 0.0
     linear: Value = 0.0
     quadratic: Value = 0.0
+    power: Value = 0.0
     low: Value = -np.inf
     high: Value = np.inf
     ratio: Value = 1.0
@@ -66,6 +71,9 @@ class Branch:
     driven_from: int | None = None
     driven_to: int | None = None
     lazy: bool = False
+    pilot: int = -1
+    pilot_ratio: float = 0.0
+    replaces: str = ""
 
     @property
     def driving_nodes(self) -> tuple[int, int]:
@@ -90,6 +98,15 @@ class Injection:
     flow: Array
 
 
+class MovePath(NamedTuple):
+    """Branches that an actuator's move uses in one direction: its own and those of its section, -1 where none."""
+
+    actuator: int
+    branch: int
+    feed: int
+    back: int
+
+
 @dataclass(frozen=True)
 class Branches:
     """All branches as arrays of shape (branches, phases), SI."""
@@ -102,6 +119,7 @@ class Branches:
     constant: Array
     linear: Array
     quadratic: Array
+    power: Array
     low: Array
     high: Array
     ratio: Array
@@ -120,7 +138,7 @@ class Branches:
 
     def take(self, rows: NDArray[np.intp]) -> Branches:
         """The same network for some of the phases."""
-        per_row = ("constant", "linear", "quadratic", "low", "high", "ratio", "gain", "open")
+        per_row = ("constant", "linear", "quadratic", "power", "low", "high", "ratio", "gain", "open")
         arrays: dict[str, Any] = {name: np.take(getattr(self, name), rows, axis=1) for name in per_row}
         arrays |= {name: getattr(self, name)[rows] for name in ("flow_scale", "viscosity", "density")}
         return replace(
@@ -167,5 +185,5 @@ def stack(
         density=oil[1],
         foldable=np.array([i.driven_from is None for i in items], bool),
         lazy=np.array([i.lazy for i in items], bool),
-        **{name: rows(name) for name in ("constant", "linear", "quadratic", "low", "high", "ratio", "gain")},
+        **{name: rows(name) for name in ("constant", "linear", "quadratic", "power", "low", "high", "ratio", "gain")},
     )

@@ -74,6 +74,7 @@ class Elements:
     constant: Array
     linear: Array
     quadratic: Array
+    power: Array
     low: Array
     high: Array
     active: NDArray[np.bool_]
@@ -88,7 +89,7 @@ class Elements:
 
     def take(self, rows: Integers) -> Elements:
         """The same network for some rows of the batch."""
-        per_row = ("ratio", "gain", "constant", "linear", "quadratic", "low", "high", "active", "injection")
+        per_row = ("ratio", "gain", "constant", "linear", "quadratic", "power", "low", "high", "active", "injection")
         arrays: dict[str, Any] = {name: np.take(getattr(self, name), rows, axis=1) for name in per_row}
         taken = replace(self, flow_scale=self.flow_scale[rows], lines=self.lines.take(rows), **arrays)
         taken.__dict__["solver"] = self.solver
@@ -100,6 +101,8 @@ class Elements:
         linear = self.linear + LEAST_SLOPE
         drop = self.constant + flow * (linear + self.quadratic * root)
         slope = linear + self.quadratic * (2.0 * root - LAMINAR_FLOW**2 / root)
+        for limited in np.flatnonzero(self.power.any(axis=1)):
+            _limit(drop[limited], slope[limited], flow[limited], self.power[limited])
         lines = self.lines
         if lines.element.size:
             line_flow = lines.flow_factor * flow[lines.element] * self.flow_scale
@@ -174,3 +177,13 @@ class Elements:
         step_p = node_side - self.outflow(eliminated)
         self.solver.solve(factors, step_p)
         return eliminated + conductance * self.driving(step_p), step_p
+
+
+def _limit(drop: Array, slope: Array, flow: Array, power: Array) -> None:
+    """Raise a pump's drop [-] to where its flow [-] times its pressure is no more than the power [-], in place."""
+    limits = (power > 0) & (flow > 0)
+    flow = np.where(limits, flow, 1.0)
+    limit = np.where(limits, -power / flow, -np.inf)
+    over = limit > drop
+    drop[over] = limit[over]
+    slope[over] = (power / flow**2)[over]

@@ -10,10 +10,10 @@ from heataudit.network.assemble import Network
 from heataudit.network.kinds import pumps
 from heataudit.network.kinds.actuators import Actuator
 from heataudit.network.linear import Array
-from heataudit.network.openings import Spools
 from heataudit.network.plant import Plant
 from heataudit.network.settle import Settled
 from heataudit.network.solution import ActuatorState, ComponentState, PumpState, Solution, State
+from heataudit.network.unknowns import Look
 from heataudit.physics.constants import STANDARD_GRAVITY
 from heataudit.physics.pumps import loss_torque, rated_loss_torque, shaft_power, shaft_torque, viscosity_ratio
 
@@ -21,12 +21,12 @@ AS_ASKED = 1e-6
 """Share [-] by which a speed may fall short of the asked one and still count as reached."""
 
 
-def extract(network: Network, spools: Spools, settled: Settled) -> Solution:
+def extract(network: Network, settled: Settled) -> Solution:
     """States of all components, and the balances of every phase."""
     found = _Found(network, settled)
     components = _components(network, found)
     pump_state = _pumps(network, found)
-    actuators = _actuators(network, spools, settled, found)
+    actuators = _actuators(network, settled, found)
     heat = components.heat.sum(axis=0) + pump_state.heat.sum(axis=0) + actuators.heat.sum(axis=0)
     given = pump_state.shaft_power.sum(axis=0) - actuators.power.sum(axis=0) - components.lifting.sum(axis=0)
     plant = network.plant
@@ -84,22 +84,38 @@ def _components(network: Network, found: _Found) -> ComponentState:
         friction = found.drop(line.name, "line") - np.where(flow != 0, head, 0.0)
         rows.append((line.name, "line", flow, friction + head, flow * friction, nothing, flow * head))
     for valve in plant.rows_of("valves"):
-        flow, drop = found.flow(valve.name, "valve"), found.drop(valve.name, "valve")
-        rows.append((valve.name, valve.kind, flow, drop, flow * drop, nothing, nothing))
+        rows.append((valve.name, valve.kind, *_valve(valve.name, found), nothing, nothing))
     for section in plant.rows_of("sections"):
         flow = found.flow(section.name, "P-A") + found.flow(section.name, "P-B")
         drop = found.drop(section.name, "P-A") + found.drop(section.name, "P-B")
-        back = found.heat(section.name, "B-T") + found.heat(section.name, "A-T")
+        back = sum((found.heat(section.name, role) for role in ("B-T", "A-T", "regeneration")), nothing)
         heat = found.heat(section.name, "P-A") + found.heat(section.name, "P-B") + back
         rows.append((section.name, "section", flow, drop, heat, back, nothing))
-    others = [(g.name, "gallery") for g in network.galleries]
-    others += [(b.component, "void") for b in network.branches.items if b.role == "void"]
-    for name, kind in others:
-        flow, drop = found.flow(name, kind), found.drop(name, kind)
-        rows.append((name, kind, flow, drop, flow * drop, nothing, nothing))
+    for name in dict.fromkeys(gallery.name for gallery in network.banks.galleries):
+        rows.append((name, "gallery", *_gallery(name, network, found), nothing, nothing))
+    for name in (branch.component for branch in network.branches.items if branch.role == "void"):
+        flow, drop = found.flow(name, "void"), found.drop(name, "void")
+        rows.append((name, "void", flow, drop, flow * drop, nothing, nothing))
     names, kinds, *arrays = zip(*rows, strict=True) if rows else ((), (), (), (), (), (), ())
     shape = (len(rows), plant.phases)
     return ComponentState(names, kinds, *(np.array(a, float).reshape(shape) for a in arrays))
+
+
+def _valve(name: str, found: _Found) -> tuple[Array, Array, Array]:
+    """Flow [m³/s], drop [Pa] and heat [W] of a valve over all its branches; its surplus side is not in the flow."""
+    ahead = [role for role in ("valve", "lifted") if (name, role) in found.number]
+    flow = sum((found.flow(name, role) for role in ahead), found.nothing) - found.flow(name, "back")
+    drop = sum((found.drop(name, role) for role in ahead), found.nothing) - found.drop(name, "back")
+    heat = sum((found.heat(name, role) for role in (*ahead, "back", "surplus")), found.nothing)
+    return flow, drop, heat
+
+
+def _gallery(name: str, network: Network, found: _Found) -> tuple[Array, Array, Array]:
+    """Flow [m³/s] into a gallery, drop [Pa] over all its parts that carry oil, and heat [W]."""
+    roles = [gallery.role for gallery in network.banks.galleries if gallery.name == name]
+    flow = found.flow(name, roles[0])
+    drop = sum((found.drop(name, role) for role in roles), found.nothing)
+    return flow, drop, sum((found.heat(name, role) for role in roles), found.nothing)
 
 
 def _pumps(network: Network, found: _Found) -> PumpState:
@@ -113,31 +129,44 @@ def _pumps(network: Network, found: _Found) -> PumpState:
 def _pump(pump: Any, plant: Plant, network: Network, found: _Found) -> dict[str, Array]:
     """State of one pump, arrays of shape (phases,)."""
     turning = pumps.full_flow(pump, plant) > 0
-    outlet, inlet, drain = (
-        np.nan_to_num(found.pressure(plant.node(label))) for label in (pump.outlet, pump.suction, pump.drain_to)
-    )
+    nodes = [plant.node(label) for label in (pump.outlet, pump.suction, pump.drain_to)]
+    outlet, inlet, drain = (np.nan_to_num(found.pressure(node)) for node in nodes)
     swept = found.flow(pump.name, "displacement")
     for injection in network.branches.injections:
-        if injection.component == pump.name and injection.flow.any() and injection.node == plant.node(pump.outlet):
+        if injection.component == pump.name and injection.node == nodes[0]:
             swept = injection.flow
     drop = np.where(turning, outlet - inlet, 0.0)
-    slip = np.where(turning, pumps.slip(pump, plant) * drop, 0.0)
-    speed = pumps.speed(pump, plant)
-    ratio = viscosity_ratio(plant.viscosity, pump.rated_viscosity, pump.viscosity_exponent)
-    rated = rated_loss_torque(pump.displacement, pump.rated_pressure, pump.hydromechanical_efficiency)
-    loss = loss_torque(rated, pump.viscous_share, drop / pump.rated_pressure, speed / pump.speed, ratio)
-    used = np.where(turning, swept / np.where(speed > 0, speed, 1.0), 0.0)
-    shaft = np.where(turning, shaft_power(shaft_torque(used, drop, loss), speed), 0.0)
-    hydraulic = outlet * (swept - slip) + drain * slip - inlet * swept
+    slips = found.flow(pump.name, "slip"), found.flow(pump.name, "slip back")
+    charged = found.flow(pump.name, "charge"), found.flow(pump.name, "charge back")
+    nominal = pumps.speed(pump, plant)
+    speed = nominal
+    if pump.control == "speed controlled":
+        speed = np.where(turning, swept / pump.displacement, 0.0)
+    shaft = np.where(turning, _shaft_power(pump, plant, (swept, speed, drop)), 0.0)
+    shaft = shaft + (charged[0] + charged[1]) * (0.0 if np.isnan(pump.charge_pressure) else pump.charge_pressure)
+    hydraulic = outlet * (swept - slips[0] + charged[1]) - inlet * (swept + slips[1] - charged[0])
+    hydraulic = hydraulic + drain * (slips[0] + slips[1])
     return {
-        "pressure": outlet, "inlet_pressure": inlet, "flow": swept - slip, "slip": slip, "speed": speed,
-        "displacement": used / pump.displacement, "setting": np.broadcast_to(pumps.setting(pump, plant), speed.shape),
-        "shaft_power": shaft, "heat": shaft - hydraulic,
+        "pressure": outlet, "inlet_pressure": inlet, "flow": swept - slips[0], "slip": slips[0] + slips[1],
+        "speed": speed, "displacement": swept / (np.where(speed > 0, speed, 1.0) * pump.displacement),
+        "setting": np.broadcast_to(pumps.setting(pump, plant), speed.shape), "shaft_power": shaft,
+        "heat": shaft - hydraulic,
     }  # fmt: skip
 
 
-def _actuators(network: Network, spools: Spools, settled: Settled, found: _Found) -> ActuatorState:
-    states = [_actuator(a, spools, settled, found) for a in network.actuators]
+def _shaft_power(pump: Any, plant: Plant, state: tuple[Array, Array, Array]) -> Array:
+    """Shaft power [W] at a swept flow [m³/s], speed [1/s] and pressure difference [Pa]."""
+    swept, speed, drop = state
+    ratio = viscosity_ratio(plant.viscosity, pump.rated_viscosity, pump.viscosity_exponent)
+    rated = rated_loss_torque(pump.displacement, pump.rated_pressure, pump.hydromechanical_efficiency)
+    loss = loss_torque(rated, pump.viscous_share, np.abs(drop) / pump.rated_pressure, speed / pump.speed, ratio)
+    used = swept / np.where(speed > 0, speed, 1.0)
+    return np.asarray(shaft_power(shaft_torque(used, drop, loss), speed))
+
+
+def _actuators(network: Network, settled: Settled, found: _Found) -> ActuatorState:
+    look = Look(network, settled, np.arange(network.plant.phases))
+    states = [_actuator(a, network, look, found) for a in network.actuators]
     shape = (len(states), network.plant.phases)
     names = ("state", "flow", "speed", "asked_speed", "inlet", "outlet", "load", "opening", "power", "heat")
     arrays = {name: np.array([state[name] for state in states], float).reshape(shape) for name in names}
@@ -148,33 +177,34 @@ def _actuators(network: Network, spools: Spools, settled: Settled, found: _Found
     )
 
 
-def _actuator(actuator: Actuator, spools: Spools, settled: Settled, found: _Found) -> dict[str, Array]:
+def _actuator(actuator: Actuator, network: Network, look: Look, found: _Found) -> dict[str, Array]:
     """State of one actuator, arrays of shape (phases,)."""
     command, (forward, backward) = actuator.command, actuator.drives
-    going_back = command.backward
+    going_back = actuator.backward
     flow = np.where(going_back, found.flow(actuator.name, "backward"), found.flow(actuator.name, "forward"))
     left = flow * np.where(going_back, backward.flow_ratio, forward.flow_ratio)
     inlet = np.where(going_back, found.pressure(backward.inlet), found.pressure(forward.inlet))
     outlet = np.where(going_back, found.pressure(backward.outlet), found.pressure(forward.outlet))
-    active = command.forward | command.backward
+    active = command.forward | command.backward | command.floating
     speed = actuator.speed(flow)
     load = actuator.load_found(inlet, outlet)
     power = np.where(flow > 0, actuator.power(np.nan_to_num(load), speed, flow), 0.0)
     hydraulic = np.where(flow > 0, np.nan_to_num(inlet) * flow - np.nan_to_num(outlet) * left, 0.0)
     moving, short = flow > 0, speed < command.speed * (1.0 - AS_ASKED)
     state = np.select(
-        [~active | command.pressing | (command.speed == 0), ~moving, short], [State.HELD, State.STALLED, State.SLOW],
-        State.MOVING,
+        [~active | command.pressing | (command.speed == 0), command.floating, ~moving, short],
+        [State.HELD, State.FLOATING, State.STALLED, State.SLOW], State.MOVING,
     )  # fmt: skip
     shown = active & ~(command.speed == 0)
     one_port = actuator.row.kind == "plunger"
     opening = np.full(len(flow), np.nan)
-    if actuator.row.section:
-        opening = np.where(active, command.opening * spools.share(actuator.row.section, settled), 0.0)
+    section = next((s for s in network.banks.sections if s.name == actuator.row.section), None)
+    if section is not None:
+        opening = np.where(command.floating, 1.0, section.opening * look.share(section.name))
     return {
         "state": state, "flow": flow, "speed": speed, "asked_speed": np.where(active, command.speed, np.nan),
         "inlet": np.where(shown & ~(going_back & one_port), inlet, np.nan),
-        "outlet": np.where(shown & ~(command.forward & one_port), outlet, np.nan),
+        "outlet": np.where(shown & ~(actuator.forward & one_port), outlet, np.nan),
         "load": np.where(active, load, np.nan), "opening": opening, "power": power, "heat": hydraulic - power,
     }  # fmt: skip
 

@@ -1,72 +1,51 @@
-"""Spools and galleries that find their own place: openings for asked speeds, and the galleries that they close.
+"""Find every place that components find by themselves.
 
-Every unknown is a number per phase between bounds that are known beforehand: what a gallery lets pass, as a share of
-its flow in neutral, and the opening of a spool whose oil goes elsewhere too. A single one is a bracketed root
-(Chandrupatla's method, `scipy.optimize.elementwise.find_root`). Several are taken in turn once, then together by
-Newton's method with difference quotients, and in turn again where that fails.
+A single unknown of a phase is a bracketed root (Chandrupatla's method, `scipy.optimize.elementwise.find_root`). Several
+are taken in turn once, then together by Newton's method with difference quotients; where that fails, one in another:
+at every trial of the first, those behind it are found anew.
 """
 
 from __future__ import annotations
-
-from dataclasses import replace
 
 import numpy as np
 from scipy.optimize import elementwise
 
 from heataudit.network.assemble import Network
-from heataudit.network.branches import Branches, Flags
 from heataudit.network.elements import Integers
+from heataudit.network.kinds.sections import SpoolOpening
 from heataudit.network.linear import Array
 from heataudit.network.settle import Settled, Surroundings, settle
+from heataudit.network.unknowns import Look, Trial
 
 NEWTON_STEPS = 8
 HALVINGS = 4
 DIFFERENCE = 1e-6
-STILL = 1e-9
-LEAST_OPENING = 1e-4
 TOLERANCES = {"xatol": 1e-15, "xrtol": 1e-13, "fatol": 1e-14, "frtol": 0.0}
 
 
-class Spools:
-    """The unknowns of a network, arrays of shape (unknowns, phases): first its galleries, then its moves.
+class Openings:
+    """The unknowns of a network as arrays of shape (unknowns, phases).
 
-    `place` [-] is what a gallery passes per its flow in neutral at the same drop, or the opening of a spool per the
-    allowed one; `free` tells what has to be found. `seen_open` notes the spools, shape (moves, phases), that shared
-    their oil with another way in any trial.
+    The last ones are the spools, one for each move. `seen_open` notes the spools, shape (moves, phases), that shared
+    their oil with another way in any trial, so that their opening is not explicit.
     """
 
     def __init__(self, network: Network) -> None:
-        """Galleries stand where the allowed openings leave them."""
+        """All unknowns where they start."""
         self.network = network
         plant = network.plant
         self.around = Surroundings(
             plant.machine.oil["pressure_viscosity_coefficient"], network.paths, network.highest_setting
         )
-        self.allowed = {s: self._allowed(s) for gallery in network.galleries for s in gallery.sections}
-        self.galleries = len(network.galleries)
-        self.place = np.ones((self.galleries + len(network.paths), plant.phases))
-        self.least = np.where(np.arange(len(self.place)) < self.galleries, 0.0, LEAST_OPENING)
-        self.free = np.zeros(self.place.shape, bool)
-        self.seen_open = np.zeros((len(network.paths), plant.phases), bool)
-        for number, gallery in enumerate(network.galleries):
-            self.place[number] = gallery.conductance(np.stack([self.allowed[s] for s in gallery.sections]))
-            self.free[number] = self._is_asked(gallery.sections)
-
-    def _allowed(self, section: str) -> Array:
-        """How far a spool may open [-], 0 in neutral, shape (phases,)."""
-        command = self.network.plant.section_command(section)
-        if command is None:
-            return np.zeros(self.network.plant.phases)
-        return np.where(command.forward | command.backward, command.opening, 0.0)
-
-    def _is_asked(self, sections: tuple[str, ...]) -> Flags:
-        """Phases in which a speed is asked of one of the sections."""
-        asked = np.zeros(self.network.plant.phases, bool)
-        for section in sections:
-            command = self.network.plant.section_command(section)
-            if command is not None:
-                asked |= command.moving & ~np.isnan(command.speed)
-        return asked
+        spools = [SpoolOpening(path, plant.phases) for path in network.paths]
+        self.unknowns = [*network.unknowns, *spools]
+        self.first_spool = len(network.unknowns)
+        shape = (len(self.unknowns), plant.phases)
+        self.place = np.array([unknown.place for unknown in self.unknowns], float).reshape(shape)
+        self.free = np.array([unknown.free for unknown in self.unknowns], bool).reshape(shape)
+        self.tolerance = np.array([unknown.tolerance for unknown in self.unknowns]).reshape(-1, 1)
+        self.least = np.array([unknown.least for unknown in self.unknowns], float)
+        self.seen_open = np.zeros((len(spools), plant.phases), bool)
 
     def solve(self) -> Settled:
         """Solve the network, and find every place."""
@@ -77,7 +56,7 @@ class Spools:
             unsettled = self._unsettled(settled, unsettled)
             if not unsettled.size:
                 return settled
-            self.free[self.galleries :, unsettled] |= self.seen_open[:, unsettled]
+            self.free[self.first_spool :, unsettled] |= self.seen_open[:, unsettled]
             method(unsettled)
             settled.put(unsettled, self._settle(self.place[:, unsettled], unsettled))
         settled.converged[self._unsettled(settled, unsettled)] = False
@@ -85,9 +64,9 @@ class Spools:
 
     def _unsettled(self, settled: Settled, rows: Integers) -> Integers:
         """Those of some phases in which an unknown is not where it should be."""
-        excess = self._excess(self.place[:, rows], settled, rows, rows)
-        off = np.abs(excess).max(axis=0, initial=0.0) > STILL
-        return rows[off | settled.throttled.open_way[:, rows].any(axis=0)]
+        part = settled.take(rows)
+        off = (np.abs(self._excess(self.place[:, rows], part, rows)) / self.tolerance).max(axis=0, initial=0.0) > 1.0
+        return rows[off | part.throttled.open_way.any(axis=0)]
 
     def _in_turn(self, rows: Integers) -> None:
         """Find each unknown by itself, one after the other, in place."""
@@ -129,15 +108,16 @@ class Spools:
             if not rows.size:
                 return
             excess = self._excess(place, self._settle(place, rows), rows)
-            worst = np.abs(excess).max(axis=0, initial=0.0)
-            going = worst > 0.1 * STILL
+            worst = (np.abs(excess) / self.tolerance).max(axis=0, initial=0.0)
+            going = worst > 0.1
             if not going.any():
                 return
             rows, place, excess, worst = rows[going], place[:, going], excess[:, going], worst[going]
             step = self._newton_step(place, excess, rows)
             for halving in range(HALVINGS):
                 trial = np.clip(place + step * 0.5**halving, self.least[:, None], 1.0)
-                after = np.abs(self._excess(trial, self._settle(trial, rows), rows)).max(axis=0, initial=0.0)
+                after = self._excess(trial, self._settle(trial, rows), rows)
+                after = (np.abs(after) / self.tolerance).max(axis=0, initial=0.0)
                 better = after < worst
                 place[:, better], worst[better] = trial[:, better], after[better]
                 step[:, better] = 0.0
@@ -158,57 +138,39 @@ class Spools:
             moved = self._excess(trial, self._settle(trial, rows), rows) - excess
             column = moved / np.where(free, change, 1.0)
             slopes[free, :, number] = column[:, free].T
-            fixed = ~self.free[:, rows].T & free[:, None]
-            slopes[:, :, number][fixed] = 0.0
-        steps = np.linalg.solve(slopes, excess.T[:, :, None])[:, :, 0].T
-        return np.asarray(-steps, float)
+            stuck = free & (np.abs(slopes[:, number, number]) < 1e-12)
+            slopes[stuck, number, number] = 1.0
+        return _solved(slopes, -excess.T).T
 
     def _settle(self, place: Array, rows: Integers) -> Settled:
-        """Solve some phases with galleries and spools at trial places."""
-        settled = settle(self._placed(self.network.branches.take(rows), place, rows), self.around.take(rows))
-        free = self.free[self.galleries :, rows]
+        """Solve some phases with all unknowns at trial places."""
+        trial = Trial(self.network.branches.take(rows))
+        for number, unknown in enumerate(self.unknowns[: self.first_spool]):
+            unknown.set(trial, place[number], rows)
+        free = self.free[self.first_spool :, rows]
+        for number, unknown in enumerate(self.unknowns[self.first_spool :]):
+            if free[number].any():
+                unknown.set(trial, np.where(free[number], place[self.first_spool + number], np.nan), rows)
+        settled = settle(trial.placed(), self.around.take(rows))
         settled.throttled.open_way[free] = False
         self.seen_open[:, rows] |= settled.throttled.open_way
-        settled.throttled.share[free] = place[self.galleries :][free]
+        settled.throttled.share[free] = place[self.first_spool :][free]
         return settled
 
-    def _placed(self, branches: Branches, place: Array, rows: Integers) -> Branches:
-        """The network with its galleries and free spools at given places."""
-        quadratic, high, opened = branches.quadratic.copy(), branches.high.copy(), branches.open.copy()
-        number = {(item.component, item.role): k for k, item in enumerate(branches.items)}
-        for gallery, value in zip(self.network.galleries, place, strict=False):
-            k = number[(gallery.name, "gallery")]
-            opened[k] = value > 0
-            quadratic[k] = gallery.neutral / np.where(value > 0, value, 1.0) ** 2
-        moves = zip(self.network.paths, place[self.galleries :], self.free[self.galleries :, rows], strict=True)
-        for path, value, free in moves:
-            for edge in (path.feed, path.back):
-                if edge >= 0:
-                    quadratic[edge] /= np.where(free, value, 1.0) ** 2
-            high[path.branch] = np.where(free, np.inf, high[path.branch])
-        return replace(branches, quadratic=quadratic, high=high, open=opened)
-
-    def _excess(self, place: Array, settled: Settled, rows: Integers, at: Integers | slice = slice(None)) -> Array:
-        """What each free unknown is off by [-], shape (unknowns, phases); `at` are the rows' places in the solution.
-
-        Of a gallery, what the spools leave it less what it was taken to pass; of a spool, the speed over that asked,
-        less 1, unless it falls short wide open, or the load pushes its oil past the spool over a port relief.
-        """
+    def _excess(self, place: Array, settled: Settled, rows: Integers) -> Array:
+        """What each free unknown is off by [-], shape (unknowns, rows), in a solution of those phases."""
+        look = Look(self.network, settled, rows)
         excess = np.zeros(place.shape)
-        for number, gallery in enumerate(self.network.galleries):
-            openings = np.stack([self.allowed[s][rows] * self.share(s, settled)[at] for s in gallery.sections])
-            excess[number] = gallery.conductance(openings) - place[number]
-        for number, path in enumerate(self.network.paths, self.galleries):
-            asked = self.network.branches.high[path.branch, rows]
-            over = settled.state.flow[path.branch, at] / np.where(np.isfinite(asked), asked, 1.0) - 1.0
-            at_end = ((place[number] >= 1.0) & (over < 0)) | ((place[number] <= LEAST_OPENING) & (over > 0))
-            excess[number] = np.where(at_end, 0.0, over)
-        return np.where(self.free[:, rows], excess, 0.0)
+        free = self.free[:, rows]
+        for number, unknown in enumerate(self.unknowns):
+            if free[number].any():
+                excess[number] = np.where(free[number], unknown.excess(place[number], look), 0.0)
+        return excess
 
-    def share(self, section: str, settled: Settled) -> Array:
-        """Opening of a spool [-] as a share of the allowed one, shape of the solution's phases."""
-        share = np.ones(settled.throttled.share.shape[1])
-        for number, path in enumerate(self.network.paths):
-            if self.network.actuators[path.actuator].row.section == section:
-                share = np.minimum(share, settled.throttled.share[number])
-        return share
+
+def _solved(slopes: Array, right: Array) -> Array:
+    """Solutions of small systems, shape (phases, unknowns); none where a system is singular."""
+    regular = np.abs(np.linalg.det(slopes)) > 1e-300
+    step = np.zeros_like(right)
+    step[regular] = np.linalg.solve(slopes[regular], right[regular][:, :, None])[:, :, 0]
+    return step

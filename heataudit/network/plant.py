@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections import defaultdict
 from dataclasses import dataclass
 from functools import cached_property
 from typing import Any
@@ -10,12 +11,16 @@ import numpy as np
 from numpy.typing import NDArray
 
 from heataudit.machine import TANK, Cycle, Machine, Move, Ports, Problem, WorkbookError
+from heataudit.network.kinds.loads import FORWARD, highest_load_pressure
 from heataudit.network.linear import Array
+from heataudit.network.topology import reached
 from heataudit.physics.air import standard_pressure
 from heataudit.physics.oil import Oil
 
-FORWARD = (Move.EXTEND, Move.FORWARD, Move.ON, Move.PRESS)
 BACKWARD = (Move.RETRACT, Move.REVERSE)
+
+ONE_WAY = ("check", "relief", "load-sensing unloading", "priority")
+"""Kinds of valve that oil passes from From only."""
 
 Flags = NDArray[np.bool_]
 
@@ -24,13 +29,14 @@ Flags = NDArray[np.bool_]
 class Command:
     """What the duty cycle asks of one actuator, arrays of shape (phases,).
 
-    `forward` feeds port A and `backward` port B; a `pressing` actuator is at its stop. `opening` [-] is how far its
-    spool may open, `speed` [m/s or 1/s] is asked or NaN.
+    `forward` feeds port A and `backward` port B; a `pressing` actuator is at its stop, one that is `floating` has both
+    ports joined to the return. `opening` [-] is how far its spool may open, `speed` [m/s or 1/s] is asked or NaN.
     """
 
     forward: Flags
     backward: Flags
     pressing: Flags
+    floating: Flags
     opening: Array
     speed: Array
 
@@ -38,6 +44,19 @@ class Command:
     def moving(self) -> Flags:
         """Commanded and free to move."""
         return (self.forward | self.backward) & ~self.pressing
+
+
+LOAD_SHARE = 1.3
+"""Opening pressure [-] of a counterbalance valve per the highest load pressure, where none is given: common practice."""
+
+
+def counterbalance_estimates(machine: Machine, ports: Ports) -> dict[str, float]:
+    """Opening pressures [Pa] of the counterbalance valves that have none: 1.3 x the highest load at From."""
+    blank = machine.valves[(machine.valves["kind"] == "counterbalance") & machine.valves["opening_pressure"].isna()]
+    return {
+        valve.name: LOAD_SHARE * highest_load_pressure(machine, ports, ports.node(valve.from_))
+        for valve in blank.itertuples(index=False)
+    }
 
 
 def machine_oil(machine: Machine) -> Oil:
@@ -71,9 +90,11 @@ class Plant:
     def __init__(self, machine: Machine, cycle: Cycle, ports: Ports, oil_temperature: Array) -> None:
         """Oil at the given temperatures."""
         self.machine = machine
+        self.estimates = counterbalance_estimates(machine, ports)
         self.cycle = cycle
         self.ports = ports
         self.phases = len(cycle.duration)
+        self.node_count = len(ports)
         self.oil = machine_oil(machine)
         self.temperature = oil_temperature
         self.viscosity = self.oil.viscosity(oil_temperature)
@@ -83,6 +104,11 @@ class Plant:
     def node(self, label: str) -> int:
         """Node number [-] of a port label; the tank is node 0."""
         return self.ports.node(label or TANK)
+
+    def new_node(self) -> int:
+        """Number [-] of another node, one that no port label names."""
+        self.node_count += 1
+        return self.node_count - 1
 
     def given(self, component: str, quantity: str, default: float | Array) -> Array:
         """What the duty cycle says of a component, shape (N,), or the default where it says nothing."""
@@ -102,6 +128,7 @@ class Plant:
             forward=np.isin(moves, [int(m) for m in FORWARD]),
             backward=np.isin(moves, [int(m) for m in BACKWARD]),
             pressing=moves == int(Move.PRESS),
+            floating=moves == int(Move.FLOAT),
             opening=self.given(actuator, "opening", 1.0),
             speed=np.where(np.isnan(speed), travel / self.cycle.duration, speed),
         )
@@ -110,6 +137,33 @@ class Plant:
         """Speed [1/s] of a drive by its table; NaN where none is given."""
         drives = self.machine.drives
         return float(drives["speed"][drives["name"] == drive].iloc[0])
+
+    def counterbalance_opening(self, valve: Any) -> float:
+        """Opening pressure [Pa] of a counterbalance valve; an estimate where none is given."""
+        if np.isnan(valve.opening_pressure):
+            return self.estimates[valve.name]
+        return float(valve.opening_pressure)
+
+    def reach(self, start: int, without: tuple[str, ...]) -> set[int]:
+        """Nodes that oil from a node may reach over lines and valves, kinds of valve `without` left out."""
+        around: dict[int, set[int]] = defaultdict(set)
+        for line in self.rows_of("lines"):
+            around[self.node(line.from_)].add(self.node(line.to))
+            around[self.node(line.to)].add(self.node(line.from_))
+        for valve in self.rows_of("valves"):
+            if valve.kind not in without:
+                around[self.node(valve.from_)] |= {self.node(valve.to)}
+                if valve.kind == "priority":
+                    around[self.node(valve.from_)] |= {self.node(valve.port_3)}
+                if valve.kind not in ONE_WAY:
+                    around[self.node(valve.to)].add(self.node(valve.from_))
+        around[0].clear()
+        return reached(around, start)
+
+    def is_compensated(self, section: str) -> bool:
+        """Whether a section has a compensator that meters the flow asked for."""
+        found = self.machine.sections["compensator"][self.machine.sections["name"] == section]
+        return bool(len(found)) and found.iloc[0] != "none"
 
     def section_command(self, section: str) -> Command | None:
         """Command of the actuator that a section serves, if it serves one."""

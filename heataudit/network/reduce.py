@@ -44,7 +44,7 @@ class Folding:
         """
         br, phases = self.branches, self.branches.phases
         slots = len(self.topology.slots)
-        arrays = {name: np.zeros((slots, phases)) for name in ("constant", "linear", "quadratic")}
+        arrays = {name: np.zeros((slots, phases)) for name in ("constant", "linear", "quadratic", "power")}
         arrays |= {"ratio": np.ones((slots, phases)), "gain": np.ones((slots, phases))}
         arrays |= {"low": np.full((slots, phases), -np.inf), "high": np.full((slots, phases), np.inf)}
         active = np.zeros((slots, phases), bool)
@@ -63,6 +63,7 @@ class Folding:
                     arrays["constant"][slot, rows] += b * sign * br.constant[k, rows]
                     arrays["linear"][slot, rows] += b * a * br.linear[k, rows]
                     arrays["quadratic"][slot, rows] += b * a * a * br.quadratic[k, rows]
+                    arrays["power"][slot, rows] += br.power[k, rows]
                     low, high = br.low[k, rows] / a, br.high[k, rows] / a
                     low, high = (low, high) if sign > 0 else (-high, -low)
                     arrays["low"][slot, rows] = np.maximum(arrays["low"][slot, rows], low)
@@ -82,6 +83,7 @@ class Folding:
             constant=arrays["constant"] / PRESSURE_SCALE,
             linear=arrays["linear"] * scale / PRESSURE_SCALE,
             quadratic=arrays["quadratic"] * scale**2 / PRESSURE_SCALE,
+            power=arrays["power"] / (scale * PRESSURE_SCALE),
             low=arrays["low"] / scale,
             high=arrays["high"] / scale,
             active=active,

@@ -7,8 +7,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from heataudit.network.active_set import finish, solve_reduced
-from heataudit.network.assemble import MovePath
-from heataudit.network.branches import Branches, Flags
+from heataudit.network.branches import Branches, Flags, MovePath
 from heataudit.network.elements import PRESSURE_SCALE, Integers
 from heataudit.network.linear import Array
 from heataudit.network.reduce import Folding
@@ -53,6 +52,15 @@ class Settled:
     residual: Array
     converged: Flags
 
+    def take(self, rows: Integers) -> Settled:
+        """Some of the phases."""
+        state, throttled = self.state, self.throttled
+        return Settled(
+            Spread(state.flow[:, rows], state.drop[:, rows], state.pressure[:, rows]),
+            Throttled(throttled.share[:, rows], throttled.open_way[:, rows]),
+            self.iterations[rows], self.residual[rows], self.converged[rows],
+        )  # fmt: skip
+
     def put(self, rows: Integers, other: Settled) -> None:
         """Take over some phases from another batch."""
         for mine, its in (
@@ -74,7 +82,7 @@ def settle(branches: Branches, around: Surroundings) -> Settled:
         rows = np.flatnonzero(missing.any(axis=0))
         if not rows.size:
             return settled
-        branches = replace(branches, open=branches.open | missing)
+        branches = replace(branches, open=(branches.open | missing) & ~_replaced(branches, missing))
         settled.put(rows, _settle_open(branches.take(rows), around.take(rows)))
 
 
@@ -82,9 +90,25 @@ def _missing(branches: Branches, state: Spread) -> Flags:
     """Lazy branches, shape (branches, phases), that are left out and whose ends would open them."""
     missing = np.zeros_like(branches.open)
     for k in np.flatnonzero(branches.lazy):
-        across = state.pressure[branches.start[k]] - state.pressure[branches.end[k]]
-        missing[k] = ~branches.open[k] & (across > branches.constant[k] + OPENS)
+        item = branches.items[k]
+        across = state.pressure[item.start] - state.pressure[item.end]
+        if item.pilot >= 0:
+            opens = (across < 0) & (item.pilot_ratio * state.pressure[item.pilot] + across >= 0)
+        else:
+            opens = across > branches.constant[k] + OPENS
+        missing[k] = ~branches.open[k] & opens
     return missing
+
+
+def _replaced(branches: Branches, opened: Flags) -> Flags:
+    """Branches, shape (branches, phases), in whose place others have come."""
+    replaced = np.zeros_like(branches.open)
+    for k in np.flatnonzero(opened.any(axis=1)):
+        item = branches.items[k]
+        for other, candidate in enumerate(branches.items):
+            if (candidate.component, candidate.role) == (item.component, item.replaces):
+                replaced[other] |= opened[k]
+    return replaced
 
 
 def _settle_open(branches: Branches, around: Surroundings) -> Settled:

@@ -11,7 +11,7 @@ from heataudit.network.assemble import assemble
 from heataudit.network.elements import Integers
 from heataudit.network.extract import extract
 from heataudit.network.linear import Array
-from heataudit.network.openings import Spools
+from heataudit.network.openings import Openings
 from heataudit.network.plant import Plant
 from heataudit.network.solution import Solution
 
@@ -51,9 +51,8 @@ def _solve_batch(machine: Machine, cycle: Cycle, ports: Ports, oil_temperature: 
     """Assemble, solve, extract."""
     plant = Plant(machine, cycle.take(rows), ports, oil_temperature[rows])
     network = assemble(plant)
-    spools = Spools(network)
-    settled = spools.solve()
-    return extract(network, spools, settled)
+    settled = Openings(network).solve()
+    return extract(network, settled)
 
 
 def _operating_points(cycle: Cycle, oil_temperature: Array) -> tuple[Integers, Integers]:

@@ -14,8 +14,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from heataudit.network.assemble import MovePath
-from heataudit.network.branches import Branches, Flags
+from heataudit.network.branches import Branches, Flags, MovePath
 from heataudit.network.linear import Array
 from heataudit.network.spread import Spread
 from heataudit.network.topology import Pattern, Topology, reached

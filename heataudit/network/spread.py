@@ -122,6 +122,9 @@ def _owners(
 def _drop(branches: Branches, k: int, rows: Rows, flow: Array, viscosity_factor: Array) -> Array:
     """Drop [Pa] of a branch at a flow [m³/s] by its law."""
     drop = branches.constant[k, rows] + flow * (branches.linear[k, rows] + branches.quadratic[k, rows] * np.abs(flow))
+    power = branches.power[k, rows]
+    limited = (power > 0) & (flow > 0)
+    drop = np.where(limited, np.maximum(drop, -power / np.where(limited, flow, 1.0)), drop)
     shape = branches.items[k].line
     if shape is not None:
         friction, _ = line_drop(
@@ -133,16 +136,33 @@ def _drop(branches: Branches, k: int, rows: Rows, flow: Array, viscosity_factor:
 
 
 def _dead_ends(branches: Branches, pattern: Pattern, state: Spread) -> None:
-    """Pressures behind open branches without flow: the pressure in front of them, less what holds them shut."""
+    """Pressures behind open branches without flow: the pressure in front of them, less what holds them shut.
+
+    Behind an actuator that cannot move it is the pressure that balances its load.
+    """
     rows = pattern.rows
     known = ~np.isnan(state.pressure[:, rows[0]])
     living = {k for chain in pattern.chains for k, _ in chain.items}
-    quiet = [k for k in np.flatnonzero(branches.open[:, rows[0]])
-             if k not in living and branches.items[k].role not in MOVES]  # fmt: skip
+    quiet = [k for k in np.flatnonzero(branches.open[:, rows[0]]) if k not in living]
+    ways = [k for k in quiet if branches.items[k].role not in MOVES]
+    blocked = [k for k in quiet if branches.items[k].role in MOVES]
+    _pass_on(branches, rows, state, known, ways)
+    for k in blocked:
+        item = branches.items[k]
+        gain = branches.gain[k, rows]
+        if known[item.start] and not known[item.end] and (gain > 0).all():
+            held = (state.pressure[item.start, rows] - branches.constant[k, rows]) / gain
+            state.pressure[item.end, rows] = np.maximum(held, 0.0)
+            known[item.end] = True
+    _pass_on(branches, rows, state, known, ways)
+
+
+def _pass_on(branches: Branches, rows: Rows, state: Spread, known: NDArray[np.bool_], ways: list[int]) -> None:
+    """Carry known pressures over still oil."""
     moved = True
     while moved:
         moved = False
-        for k in quiet:
+        for k in ways:
             item = branches.items[k]
             if known[item.start] and not known[item.end]:
                 state.pressure[item.end, rows] = state.pressure[item.start, rows] - branches.constant[k, rows]

@@ -61,8 +61,8 @@ class Topology:
 
 def analyse(branches: Branches) -> Topology:
     """Find the patterns of a batch and fold each into chains."""
-    feeds = np.array([i.flow != 0 for i in branches.injections], bool).reshape(-1, branches.phases)
-    signature = np.concatenate([branches.open, feeds])
+    feeds = np.array([np.sign(i.flow) for i in branches.injections], np.int8).reshape(-1, branches.phases)
+    signature = np.concatenate([branches.open, feeds > 0, feeds < 0])
     packed = np.packbits(signature, axis=0)
     _, first, inverse = np.unique(packed, axis=1, return_index=True, return_inverse=True)
     inverse = inverse.reshape(-1)
@@ -100,7 +100,7 @@ class _Slots:
         return tuple(numbers)
 
 
-def _prune(branches: Branches, opened: NDArray[np.bool_], feeds: NDArray[np.bool_]) -> NDArray[np.bool_]:
+def _prune(branches: Branches, opened: NDArray[np.bool_], feeds: NDArray[np.int8]) -> NDArray[np.bool_]:
     """Branches that can carry flow: of those open, none may end at a node that lacks a way in or a way out."""
     alive = opened.copy()
     one_way = [k for k, item in enumerate(branches.items) if item.one_way]
@@ -109,9 +109,9 @@ def _prune(branches: Branches, opened: NDArray[np.bool_], feeds: NDArray[np.bool
     while True:
         ways_in: dict[int, set[object]] = defaultdict(set)
         ways_out: dict[int, set[object]] = defaultdict(set)
-        for injection, on in zip(branches.injections, feeds, strict=True):
-            if on:
-                ways = ways_in if injection.flow[injection.flow != 0][0] > 0 else ways_out
+        for injection, sign in zip(branches.injections, feeds, strict=True):
+            if sign:
+                ways = ways_in if sign > 0 else ways_out
                 ways[injection.node].add(("feed", injection.component))
         for k in np.flatnonzero(alive).tolist():
             start, end = int(branches.start[k]), int(branches.end[k])
@@ -131,7 +131,7 @@ def _prune(branches: Branches, opened: NDArray[np.bool_], feeds: NDArray[np.bool
         alive[dead] = False
 
 
-def _is_joined(branches: Branches, alive: NDArray[np.bool_], feeds: NDArray[np.bool_]) -> NDArray[np.bool_]:
+def _is_joined(branches: Branches, alive: NDArray[np.bool_], feeds: NDArray[np.int8]) -> NDArray[np.bool_]:
     """Branches that hang together with the tank or a pump; nothing drives oil through the others."""
     around: dict[int, set[int]] = defaultdict(set)
     for k in np.flatnonzero(alive):
@@ -149,7 +149,7 @@ def _passes(ways_in: set[object], ways_out: set[object]) -> bool:
     return bool(ways_in) and bool(ways_out) and len(ways_in | ways_out) > 1
 
 
-def _junctions(branches: Branches, alive: NDArray[np.bool_], feeds: NDArray[np.bool_]) -> set[int]:
+def _junctions(branches: Branches, alive: NDArray[np.bool_], feeds: NDArray[np.int8]) -> set[int]:
     """Nodes at which branches cannot be folded: more than two ways, a pump, or another component's driving pressure."""
     degree: dict[int, int] = defaultdict(int)
     kept = {i.node for i, on in zip(branches.injections, feeds, strict=True) if on}

@@ -67,8 +67,6 @@ class Command:
     by: str = "kind"
     measures: Mapping[str, tuple[Measure, ...]]
     words: Mapping[str, tuple[str, ...]] | None = None
-    not_yet: tuple[str, ...] = ()
-    computed: bool = True
     at_least: float | None = None
     at_most: float | None = None
 
@@ -77,11 +75,11 @@ class Command:
         header = f"{component} {self.quantity}"
         if self.words is not None:
             return Column(
-                header=header, help=self.help, holds="word", words=self.words[kind], not_yet=self.not_yet,
+                header=header, help=self.help, holds="word", words=self.words[kind],
                 default=Default("hold", "not commanded", listed=False),
             )  # fmt: skip
         dimension, unit_name = measure
-        column = Column(header=header, help=self.help, dimension=dimension, unit_name=unit_name, computed=self.computed)
+        column = Column(header=header, help=self.help, dimension=dimension, unit_name=unit_name)
         return replace(column, at_least=self.at_least, at_most=self.at_most)
 
 
@@ -95,7 +93,7 @@ _EVERY_PUMP = ("fixed", "pressure compensated", "load sensing", "speed controlle
 
 COMMANDS = (
     Command(
-        quantity="move", table="actuators", measures=dict.fromkeys(MOVES, ()), words=MOVES, not_yet=("float",),
+        quantity="move", table="actuators", measures=dict.fromkeys(MOVES, ()), words=MOVES,
         help="What the actuator does; blank: hold.",
     ),
     Command(
@@ -134,7 +132,7 @@ COMMANDS = (
     ),
     Command(
         quantity="displacement", table="pumps", by="control", measures={"set displacement": (PERCENT,)},
-        at_least=-100.0, at_most=100.0, computed=False, help="Share of the full displacement.",
+        at_least=-100.0, at_most=100.0, help="Share of the full displacement.",
     ),
     Command(
         quantity="opening", table="valves", measures={"throttle": (PERCENT,)}, at_least=0.0, at_most=100.0,

@@ -69,7 +69,7 @@ SECTIONS = Table(
         ),
         word(
             header="Feed", help="How the section is fed.", words=("parallel", "tandem", "series"),
-            not_yet=("tandem", "series"), default=Default("parallel", "usual"),
+            default=Default("parallel", "usual"),
         ),
         port(header="Port P", help="Port label.", default=Default(_bank_p, "the bank's label", listed=False)),
         port(header="Port T", help="Port label.", default=Default(_bank_t, "the bank's label", listed=False)),
@@ -106,12 +106,12 @@ SECTIONS = Table(
         ),
         word(
             header="Compensator", help="What keeps the flow independent of the load.",
-            words=("none", "individual", "flow sharing"), not_yet=("individual", "flow sharing"),
+            words=("none", "individual", "flow sharing"),
             default=Default("none", "usual"),
         ),
         word(
             header="Regeneration", help="extend: extending, oil from the rod side joins the feed.",
-            words=("none", "extend"), not_yet=("extend",), default=Default("none", "usual"),
+            words=("none", "extend"), default=Default("none", "usual"),
         ),
     ),
     example={"name": "Lift", "bank": "Main", "port_t": "Tank", "size": "NG10", "centre": "open"},

@@ -14,14 +14,11 @@ KINDS = (
     "check", "relief", "throttle", "flow control", "counterbalance", "filter", "cooler", "pilot-operated check",
     "unloading", "sequence", "reducing", "load-sensing unloading", "priority",
 )  # fmt: skip
-NOT_YET = (
-    "counterbalance", "cooler", "pilot-operated check", "unloading", "sequence", "reducing", "load-sensing unloading",
-    "priority",
-)  # fmt: skip
 
 PASSES: dict[str, Literal["both", "forward"]] = {
     "check": "forward", "relief": "forward", "throttle": "both", "flow control": "both", "filter": "both",
-    "cooler": "both",
+    "cooler": "both", "pilot-operated check": "forward", "unloading": "both", "sequence": "both",
+    "load-sensing unloading": "forward", "priority": "forward",
 }  # fmt: skip
 """Kind -> in which directions oil finds a way through at some pressure; the others may stay shut at any."""
 
@@ -51,7 +48,7 @@ VALVES = Table(
     columns=(
         name("Valve", "Name of the valve."),
         word(
-            header="Kind", words=KINDS, not_yet=NOT_YET, must=True,
+            header="Kind", words=KINDS, must=True,
             help="What it is. A shut-off valve is a throttle that the duty cycle sets to 0 or 100 %.",
         ),
         port(header="From", help="Port label.", default=Default(own_ports, "its own label", listed=False)),

@@ -65,6 +65,8 @@ class Actuator:
     """An actuator in a batch of phases: its command, its load and its two drives.
 
     `load` [N or N·m; Pa of a constant pressure consumer], shape (phases,), is NaN where gauge readings stand for it.
+    `forward` and `backward` are the directions of its move. A floating actuator goes where its load, typed as against
+    extending or turning forward, drives it.
     """
 
     def __init__(self, row: Any, plant: Plant) -> None:
@@ -73,24 +75,34 @@ class Actuator:
         self.name: str = row.name
         self.command: Command = plant.commands[row.name]
         self.drives = drives(row, plant)
-        self.returning = self.command.backward & (row.kind == "plunger")
+        self.is_compensated = plant.is_compensated(row.section)
         value = plant.cycle.value
+        pushed = np.nan_to_num(value(row.name, "load")) + np.nan_to_num(value(row.name, "load_pressure"))
+        self.forward = self.command.forward | (self.command.floating & (pushed < 0))
+        self.backward = self.command.backward | (self.command.floating & (pushed > 0))
+        self.returning = self.backward & (row.kind == "plunger")
         self.gauge_inlet, self.gauge_outlet = value(row.name, "inlet"), value(row.name, "outlet")
         self.load_pressure = value(row.name, "load_pressure")
-        self.load = self._typed_load(value(row.name, "load"))
+        load = self._typed_load(value(row.name, "load"))
+        self.load = np.where(self.command.floating, -np.abs(load), load)
 
     def _efficiency(self) -> float:
         return 1.0 if self.row.kind == "constant pressure" else float(self.row.mechanical_efficiency)
 
     def _by_direction(self, name: str) -> Array:
         forward, backward = (getattr(d, name) for d in self.drives)
-        return np.where(self.command.backward, backward, forward)
+        return np.where(self.backward, backward, forward)
 
     def _typed_load(self, load: Array) -> Array:
         """The load as typed, or from a load pressure or from both gauge readings."""
         area, ratio = self._by_direction("area"), self._by_direction("area_ratio")
         net = np.where(np.isnan(self.load_pressure), self.gauge_inlet - ratio * self.gauge_outlet, self.load_pressure)
         return np.where(np.isnan(load), load_of_effort(net * area, self._efficiency()), load)
+
+    @property
+    def is_asked(self) -> Flags:
+        """Phases in which a speed is asked of it."""
+        return self.command.moving & ~np.isnan(self.command.speed)
 
     def needed_pressure(self) -> Array:
         """Inlet pressure [Pa] that the load needs against an empty outlet, shape (phases,)."""
@@ -140,15 +152,16 @@ class Actuator:
         """Inlet to outlet, one branch for each direction; what is held, at its stop or asked for no speed is shut."""
         needed, asked = self.needed_pressure(), self.asked_flow()
         gauge_only = np.isnan(self.load)
-        free = self.command.moving & (asked > 0)
+        free = (self.command.moving & (asked > 0)) | self.command.floating
+        limit = np.where(self.is_compensated | self.command.floating, np.inf, asked)
         made = []
         for role, commanded, drive in zip(
-            ("forward", "backward"), (self.command.forward, self.command.backward), self.drives, strict=True
+            ("forward", "backward"), (self.forward, self.backward), self.drives, strict=True
         ):
             if not commanded.any():
                 continue
             made.append(self._branch(role, drive, free & commanded, np.where(gauge_only, 0.0, drive.area_ratio),
-                                     (needed, asked)))  # fmt: skip
+                                     (needed, limit)))  # fmt: skip
         return made
 
     def _branch(self, role: str, drive: Drive, opened: Flags, gain: Array, wants: tuple[Array, Array]) -> Branch:
