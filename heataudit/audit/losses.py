@@ -15,8 +15,8 @@ from heataudit.audit.routes import actuators_behind
 from heataudit.machine import Cycle, Machine, Move
 from heataudit.network.solution import Solution, State
 from heataudit.physics.actuators import decompression_energy
+from heataudit.physics.arrays import Array
 
-Array = NDArray[np.float64]
 Flags = NDArray[np.bool_]
 
 GROUP_OF_KIND = {
@@ -145,7 +145,7 @@ def _lowering(
     """What a load that drives its actuator puts into a component [W], None where that cannot be."""
     name, kind = component
     if kind == "section":
-        served = machine.actuators["name"][machine.actuators["section"] == name]
+        served = machine.actuators["name"][machine.actuators["section"] == name].tolist()
         of_edge = back
     elif kind == "counterbalance":
         served = actuators_behind(machine, solution.ports, name)

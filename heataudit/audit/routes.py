@@ -3,8 +3,16 @@
 from __future__ import annotations
 
 from collections import defaultdict
+from typing import Any
+
+import pandas as pd
 
 from heataudit.machine import TANK, Machine, Ports
+
+
+def rows_of(table: pd.DataFrame) -> list[Any]:
+    """Components of a table as named tuples."""
+    return list(table.itertuples(index=False))
 
 
 def actuators_behind(machine: Machine, ports: Ports, valve: str) -> list[str]:
@@ -34,6 +42,6 @@ def actuators_behind(machine: Machine, ports: Ports, valve: str) -> list[str]:
             waiting += ways[node]
     seen -= {ports.node(TANK), ports.node(own["to"])}
     return [
-        actuator.name for actuator in machine.actuators.itertuples(index=False)
+        actuator.name for actuator in rows_of(machine.actuators)
         if any(label and ports.node(label) in seen for label in (actuator.port_a, actuator.port_b))
     ]  # fmt: skip

@@ -5,13 +5,12 @@ from __future__ import annotations
 from collections.abc import Callable, Iterator, Sequence
 
 import numpy as np
-from numpy.typing import NDArray
 
 from heataudit.machine import Cycle, Machine
 from heataudit.network.solution import Solution
 from heataudit.network.solve import solve, spread_phases
+from heataudit.physics.arrays import Array
 
-Array = NDArray[np.float64]
 Solver = Callable[[Machine, Cycle, Array], Solution]
 
 MOST_ROWS = 16384

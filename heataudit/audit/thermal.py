@@ -8,23 +8,17 @@ from functools import cached_property
 
 import numpy as np
 import pandas as pd
-from numpy.typing import NDArray
 from scipy.interpolate import PchipInterpolator
 from scipy.optimize import brentq
 
 from heataudit.audit.losses import let_down_energy
 from heataudit.audit.states import Solver, solve_at
+from heataudit.audit.surroundings import Surroundings, cycle_mean, other_heat
 from heataudit.audit.transport import passing
-from heataudit.machine import Cycle, Machine
+from heataudit.machine import Cycle
 from heataudit.network.solution import Solution
-from heataudit.physics.air import standard_pressure
+from heataudit.physics.arrays import Array, Numbers
 from heataudit.physics.constants import KELVIN
-from heataudit.physics.coolers import capacity_rate
-from heataudit.physics.oil import Oil
-from heataudit.physics.reservoir import Tank
-from heataudit.physics.thermal_mass import heat_capacity
-
-Array = NDArray[np.float64]
 
 HOTTEST = KELVIN + 120.0
 """Oil temperature [K] above which no equilibrium is sought."""
@@ -35,139 +29,14 @@ CURVE_POINTS = 11
 CURVE_PHASES = 16384
 """Phases beyond which the shape of the heat curve is taken from a sample of the cycle."""
 
+CHILLED = 60.0
+"""How far [K] below all named temperatures an equilibrium is sought where heat is taken from the oil from outside."""
+
 AGREEMENT = 0.005
 """Difference [K] up to which two approximations of an equilibrium agree."""
 
 MOST_ROUNDS = 12
 """Approximations of an equilibrium at most."""
-
-OFFLINE = "offline"
-
-
-@dataclass(frozen=True)
-class Surroundings:
-    """Tank, oil and cooler of a machine.
-
-    Parameters
-    ----------
-    machine
-        Gives all of them.
-    """
-
-    machine: Machine
-
-    @cached_property
-    def oil(self) -> Oil:
-        """The oil."""
-        return Oil.from_settings(**self.machine.oil)
-
-    @cached_property
-    def tank(self) -> Tank:
-        """The tank, in the air of the machine's altitude."""
-        settings = self.machine.reservoir
-        return Tank(
-            volume=settings["oil_volume"], length=settings["length"], width=settings["width"],
-            height=settings["height"], raised=settings["raised"], air_movement=settings["air_movement"],
-            given_coefficient=settings["heat_transfer_coefficient"], extra_surface=settings["extra_surface"],
-            pressure=float(standard_pressure(self.machine.general["altitude"])),
-        )  # fmt: skip
-
-    @property
-    def surface(self) -> float:
-        """Surface that gives off heat [m²]."""
-        tank = self.tank
-        return tank.wall_area + tank.extra_surface + tank.plan_area * (2 if tank.raised else 1)
-
-    @property
-    def ambient(self) -> float:
-        """Yearly ambient temperature [K]."""
-        return float(self.machine.general["ambient_temperature"])
-
-    @property
-    def design_ambient(self) -> float:
-        """Hottest ambient temperature [K]."""
-        return float(self.machine.general["design_ambient_temperature"])
-
-    def coolant(self, ambient: float) -> float:
-        """Temperature [K] of what cools the oil: as given, else the air.
-
-        Parameters
-        ----------
-        ambient
-            Temperature of the air [K].
-        """
-        given = self.machine.reservoir["cooler_coolant_temperature"]
-        return ambient if given is None else float(given)
-
-    @property
-    def cooler_line(self) -> str | None:
-        """The component whose flow passes the cooler; None for a circuit of its own."""
-        name = str(self.machine.reservoir["cooler_flow_from"])
-        return None if name == OFFLINE else name
-
-    def oil_rate(self, flow: float, temperature: float) -> float:
-        """Heat that a flow of oil carries per kelvin [W/K].
-
-        Parameters
-        ----------
-        flow
-            Flow [m³/s].
-        temperature
-            Oil temperature [K].
-        """
-        return float(capacity_rate(flow, self.oil.density(temperature), self.oil.specific_heat(temperature)))
-
-    def heat_capacity(self, temperature: float) -> float:
-        """Heat capacity of oil and steel [J/K].
-
-        Parameters
-        ----------
-        temperature
-            Oil temperature at which the oil's properties are taken [K].
-        """
-        settings = self.machine.reservoir
-        return float(heat_capacity(
-            settings["oil_volume"], self.oil.density(temperature), self.oil.specific_heat(temperature),
-            settings["steel_mass"],
-        ))  # fmt: skip
-
-    def time_constant(self, temperature: float) -> float:
-        """Time constant of the tank without a cooler [s], at yearly ambient.
-
-        Parameters
-        ----------
-        temperature
-            Oil temperature [K].
-        """
-        return self.heat_capacity(temperature) / float(self.tank.conductance(temperature, self.ambient))
-
-
-def other_heat(machine: Machine, cycle: Cycle) -> Array:
-    """Heat from outside the hydraulics [W], shape (phases,): the reservoir's, and that of each phase.
-
-    Parameters
-    ----------
-    machine
-        The machine.
-    cycle
-        Its phases.
-    """
-    return cycle.other_heat + float(machine.reservoir["other_heat"])
-
-
-def cycle_mean(cycle: Cycle, values: Array) -> float:
-    """Mean over the time of a cycle, in the unit of the values.
-
-    Parameters
-    ----------
-    cycle
-        The phases.
-    values
-        One value per phase [any unit], shape (phases,).
-    """
-    time = cycle.duration * cycle.repeats
-    return float(values @ time / time.sum())
-
 
 @dataclass(frozen=True)
 class Sample:
@@ -240,57 +109,67 @@ class HeatCurve:
     other: float
 
     @cached_property
-    def _heat(self) -> Callable[[float], Array]:
-        curve: Callable[[float], Array] = PchipInterpolator(self.temperature, self.heat)
+    def _heat(self) -> Callable[[Numbers], Array]:
+        curve: Callable[[Numbers], Array] = PchipInterpolator(self.temperature, self.heat)
         return curve
 
-    def coming(self, temperature: float) -> float:
+    def coming(self, temperature: Numbers) -> Array:
         """Heat that comes in [W]: losses and other heat.
 
         Parameters
         ----------
         temperature
-            Oil temperature [K].
+            Oil temperature [K], any shape.
         """
-        return float(self._heat(temperature)) + self.other
+        return np.asarray(self._heat(temperature) + self.other)
 
-    def cooled(self, temperature: float, capacity: float, coolant: float) -> float:
+    def cooler_oil(self, temperature: Numbers) -> tuple[Numbers, Numbers]:
+        """Capacity rate [W/K] and inlet temperature [K] of the oil that passes the cooler.
+
+        Parameters
+        ----------
+        temperature
+            Oil temperature in the tank [K], any shape.
+        """
+        if np.isinf(self.cooler_flow[0]):
+            return np.inf, temperature
+        flow, reaching = (np.interp(temperature, self.temperature, v) for v in (self.cooler_flow, self.reaching))
+        rate = self.surroundings.oil_rate(flow, temperature)
+        return rate, temperature + np.divide(reaching, rate, out=np.zeros_like(rate), where=rate > 0)
+
+    def cooled(self, temperature: Numbers, capacity: float, coolant: float) -> Array:
         """Heat that a cooler takes [W]: capacity x (oil inlet - coolant), at most what the oil's flow can bring.
 
         Parameters
         ----------
         temperature
-            Oil temperature in the tank [K].
+            Oil temperature in the tank [K], any shape.
         capacity
             Of the cooler [W/K].
         coolant
             Temperature of what cools it [K].
         """
-        if capacity == 0:
-            return 0.0
-        flow, reaching = (float(np.interp(temperature, self.temperature, v)) for v in (self.cooler_flow, self.reaching))
-        rate = self.surroundings.oil_rate(flow, temperature)
-        if rate == 0:
-            return 0.0
-        return min(capacity, rate) * (temperature + reaching / rate - coolant)
+        rate, inlet = self.cooler_oil(temperature)
+        return np.asarray(np.minimum(capacity, rate) * (np.asarray(inlet) - coolant))
 
-    def going(self, temperature: float, ambient: float, capacity: float) -> float:
+    def going(self, temperature: Numbers, ambient: float, capacity: float) -> Array:
         """Heat that goes out [W]: from the tank, and through a cooler.
 
         Parameters
         ----------
         temperature
-            Oil temperature [K].
+            Oil temperature [K], any shape.
         ambient
             Temperature of the air [K].
         capacity
             Of the cooler [W/K].
         """
-        tank = float(self.surroundings.tank.heat(temperature, ambient))
-        return tank + self.cooled(temperature, capacity, self.surroundings.coolant(ambient))
+        around = self.surroundings
+        tank = around.tank.heat(temperature, ambient)
+        return np.asarray(tank + self.cooled(temperature, capacity, around.coolant(ambient)))
 
     def equilibrium(self, ambient: float, capacity: float, extra: float = 0.0) -> float | None:
-        """Oil temperature [K] at which as much goes out as comes in; the lowest one, None where there is none below 120 °C.
+        """Lowest oil temperature [K] at which as much heat goes out as comes in; None where there is none below 120 °C.
 
         Parameters
         ----------
@@ -302,11 +181,11 @@ class HeatCurve:
             Heat that comes in besides [W].
         """
 
-        def excess(temperature: float) -> float:
+        def excess(temperature: Numbers) -> Array:
             return self.coming(temperature) + extra - self.going(temperature, ambient, capacity)
 
         grid = np.linspace(self.temperature[0], HOTTEST, 241)
-        signs = np.array([excess(float(temperature)) for temperature in grid])
+        signs = excess(grid)
         out = np.flatnonzero((signs[:-1] >= 0) & (signs[1:] < 0))
         if not len(out):
             return None
@@ -337,21 +216,18 @@ class HeatCurve:
         capacity
             Of the cooler [W/K].
         """
-        step = 0.5
-        above, below = (
-            self.going(t, ambient, capacity) - self.coming(t) for t in (temperature + step, temperature - step)
-        )
-        return (above - below) / (2 * step)
+        around = np.array([temperature - 0.5, temperature + 0.5])
+        return float(np.diff(self.going(around, ambient, capacity) - self.coming(around))[0])
 
     def table(self) -> pd.DataFrame:
         """The curve as `Thermal.heat_curve` says."""
-        around, points = self.surroundings, [float(t) for t in self.temperature]
+        around = self.surroundings
         capacity = float(around.machine.reservoir["cooler_capacity"])
         return pd.DataFrame({
             "oil_C": self.temperature - KELVIN,
             "heat_kW": (self.heat + self.other) / 1e3,
-            "tank_kW": [self.going(t, around.ambient, 0.0) / 1e3 for t in points],
-            "tank_and_cooler_kW": [self.going(t, around.ambient, capacity) / 1e3 for t in points],
+            "tank_kW": self.going(self.temperature, around.ambient, 0.0) / 1e3,
+            "tank_and_cooler_kW": self.going(self.temperature, around.ambient, capacity) / 1e3,
         })  # fmt: skip
 
 
@@ -372,15 +248,17 @@ def heat_curve(surroundings: Surroundings, cycle: Cycle, solver: Solver) -> Heat
              surroundings.coolant(surroundings.ambient), general["highest_oil_temperature"],
              general["oil_temperature"]]  # fmt: skip
     known = [float(temperature) for temperature in named if temperature is not None]
-    temperatures = np.linspace(min(known) - 1.0, max(HOTTEST, *known) + 1.0, CURVE_POINTS)
+    other = cycle_mean(cycle, other_heat(machine, cycle))
+    coldest = min(known) - (1.0 if other >= 0 else CHILLED)
+    temperatures = np.linspace(coldest, max(HOTTEST, *known) + 1.0, CURVE_POINTS)
     if len(cycle) > CURVE_PHASES:
         cycle = cycle.take(np.linspace(0, len(cycle) - 1, CURVE_PHASES).astype(np.intp))
     samples = [sample(surroundings, cycle, solution)
                for solution in solve_at(solver, machine, cycle, temperatures.tolist())]  # fmt: skip
-    return HeatCurve(
-        surroundings, temperatures, np.array([s.heat for s in samples]), np.array([s.reaching for s in samples]),
-        np.array([s.cooler_flow for s in samples]), cycle_mean(cycle, other_heat(machine, cycle)),
-    )  # fmt: skip
+    table = np.array([(s.heat, s.reaching, s.cooler_flow) for s in samples]).T
+    solved = np.isfinite(table[0])
+    heat, reaching, flow = table[:, solved]
+    return HeatCurve(surroundings, temperatures[solved], heat, reaching, flow, other)
 
 
 @dataclass(frozen=True)

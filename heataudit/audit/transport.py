@@ -8,11 +8,11 @@ from typing import Any, NamedTuple
 import numpy as np
 from numpy.typing import NDArray
 
+from heataudit.audit.routes import rows_of
 from heataudit.machine import TANK, Cycle, Machine, Move
 from heataudit.network.solution import Solution
 from heataudit.physics.actuators import cylinder_areas, double_rod_areas
-
-Array = NDArray[np.float64]
+from heataudit.physics.arrays import Array
 
 BLOCK = 2048
 """Phases that are traced at a time."""
@@ -84,7 +84,7 @@ def _carried(ways: list[Way], nodes: int) -> tuple[Array, Array]:
     for way in ways:
         if way.start != 0:
             system[:, way.end, way.start] -= _ratio(way.flow, leaving[:, way.start]) * (1.0 - 1e-9)
-    carried = np.linalg.solve(system, source[:, :, None])[:, :, 0]
+    carried = np.asarray(np.linalg.solve(system, source[:, :, None])[:, :, 0], np.float64)
     carried[:, 0] = 0.0
     return carried, leaving
 
@@ -92,19 +92,20 @@ def _carried(ways: list[Way], nodes: int) -> tuple[Array, Array]:
 def _ways(machine: Machine, cycle: Cycle, solution: Solution) -> list[tuple[str, Way]]:
     """All ways of the oil with the names of their components; a section's way back carries what arrives for it."""
     found = [*_pumps(machine, solution), *_two_ports(machine, solution)]
-    for actuator in machine.actuators.itertuples(index=False):
+    for actuator in rows_of(machine.actuators):
         for forward in (True, False):
             found += _actuator(actuator, cycle, solution, forward)
     outflow = _actuator_outflow(machine, cycle, solution)
-    return found + [way for section in machine.sections.itertuples(index=False)
+    return found + [way for section in rows_of(machine.sections)
                     for way in _section(section, machine, cycle, solution, (found, outflow))]  # fmt: skip
 
 
 def _pumps(machine: Machine, solution: Solution) -> Iterator[tuple[str, Way]]:
-    table = machine.pumps.set_index("name")
     state, node = solution.pumps, solution.ports.node
+    rows = {row.name: row for row in rows_of(machine.pumps)}
     for k, name in enumerate(state.name):
-        suction, outlet, drain = (node(table.loc[name, key] or TANK) for key in ("suction", "outlet", "drain_to"))
+        row = rows[name]
+        suction, outlet, drain = (node(label or TANK) for label in (row.suction, row.outlet, row.drain_to))
         slip = np.maximum(state.slip[k], 0.0)
         slipped = slip * np.maximum(state.pressure[k] - np.nan_to_num(solution.pressure[drain]), 0.0)
         yield name, Way(suction, outlet, np.maximum(state.flow[k], 0.0), state.heat[k] - slipped)
@@ -114,11 +115,11 @@ def _pumps(machine: Machine, solution: Solution) -> Iterator[tuple[str, Way]]:
 def _two_ports(machine: Machine, solution: Solution) -> Iterator[tuple[str, Way]]:
     """Lines, valves, galleries and void sources, each with a way in either direction."""
     node = solution.ports.node
-    ends = {row.name: (row.from_, row.to) for row in machine.lines.itertuples(index=False)}
-    ends |= {row.name: (row.from_, row.to) for row in machine.valves.itertuples(index=False)}
+    ends = {row.name: (row.from_, row.to) for row in rows_of(machine.lines)}
+    ends |= {row.name: (row.from_, row.to) for row in rows_of(machine.valves)}
     opened = machine.sections[machine.sections["centre"] == "open"]
     for bank, rows in opened.groupby("bank", sort=False):
-        ends[f"{bank} gallery"] = (rows["port_p"].iloc[0], rows["port_n"].iloc[0])
+        ends[f"{bank} gallery"] = (str(rows["port_p"].iloc[0]), str(rows["port_n"].iloc[0]))
     components = solution.components
     for k, (name, kind) in enumerate(zip(components.name, components.kind, strict=True)):
         if kind == "section":
@@ -151,7 +152,7 @@ def _actuator(row: Any, cycle: Cycle, solution: Solution, forward: bool) -> Iter
 def _actuator_outflow(machine: Machine, cycle: Cycle, solution: Solution) -> dict[str, Array]:
     """Flow [m³/s] that leaves the outlet of each actuator, shape (phases,)."""
     found = {}
-    for k, row in enumerate(machine.actuators.itertuples(index=False)):
+    for k, row in enumerate(rows_of(machine.actuators)):
         flow = solution.actuators.flow[k]
         if row.kind in ("cylinder", "double rod"):
             areas = cylinder_areas if row.kind == "cylinder" else double_rod_areas
@@ -182,11 +183,11 @@ def _section(
             )  # fmt: skip
         if back:
             port = node(back)
-            left = sum((way.flow for name, way in ways if way.end == port and name != actuator["name"]), np.zeros(len(goes)))
-            left = left - sum((way.flow for _, way in ways if way.start == port), np.zeros(len(goes)))
             of_actuator = actuator["port_b" if forward else "port_a"]
             joined = bool(of_actuator) and node(of_actuator) == port
-            left = left + (outflow[actuator["name"]] if joined else 0.0)
+            left = outflow[actuator["name"]] if joined else np.zeros(len(goes))
+            left = left + sum(way.flow for name, way in ways if way.end == port and name != actuator["name"])
+            left = left - sum(way.flow for _, way in ways if way.start == port)
             yield f"{row.name} return", Way(
                 port, node(row.port_t), np.where(goes, np.maximum(left, 0.0), 0.0),
                 np.where(goes, components.return_heat[k], 0.0),

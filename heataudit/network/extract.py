@@ -17,6 +17,9 @@ from heataudit.network.unknowns import Look
 from heataudit.physics.constants import STANDARD_GRAVITY
 from heataudit.physics.pumps import loss_torque, rated_loss_torque, shaft_power, shaft_torque, viscosity_ratio
 
+LITTLE_FLOW = 1e-3
+"""Flow [-], as a share of the pump flow, to which node balances are referred at the least."""
+
 AS_ASKED = 1e-6
 """Share [-] by which a speed may fall short of the asked one and still count as reached."""
 
@@ -218,5 +221,5 @@ def _node_balance(network: Network, found: _Found) -> Array:
     for k, item in enumerate(branches.items):
         left[item.start] -= flow[k]
         left[item.end] += branches.ratio[k] * flow[k]
-    largest = np.maximum(np.abs(flow).max(axis=0, initial=0.0), 1e-12)
+    largest = np.maximum(np.abs(flow).max(axis=0, initial=0.0), LITTLE_FLOW * branches.flow_scale)
     return np.abs(left[1:]).max(axis=0, initial=0.0) / largest

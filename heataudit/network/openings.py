@@ -19,6 +19,7 @@ from heataudit.network.unknowns import Look, Trial
 
 NEWTON_STEPS = 8
 HALVINGS = 4
+NESTED_TRIES = 3
 DIFFERENCE = 1e-6
 TOLERANCES = {"xatol": 1e-15, "xrtol": 1e-13, "fatol": 1e-14, "frtol": 0.0}
 
@@ -26,7 +27,8 @@ TOLERANCES = {"xatol": 1e-15, "xrtol": 1e-13, "fatol": 1e-14, "frtol": 0.0}
 class Openings:
     """The unknowns of a network as arrays of shape (unknowns, phases).
 
-    The last ones are the spools, one for each move. `seen_open` notes the spools, shape (moves, phases), that shared
+    The last ones are the spools, one for each move. `free` tells what has to be found, `in_play` what was off at some
+    time: what rests at an end is left alone. `seen_open` notes the spools, shape (moves, phases), that shared
     their oil with another way in any trial, so that their opening is not explicit.
     """
 
@@ -45,6 +47,7 @@ class Openings:
         self.free = np.array([unknown.free for unknown in self.unknowns], bool).reshape(shape)
         self.tolerance = np.array([unknown.tolerance for unknown in self.unknowns]).reshape(-1, 1)
         self.least = np.array([unknown.least for unknown in self.unknowns], float)
+        self.in_play = np.zeros(shape, bool)
         self.seen_open = np.zeros((len(spools), plant.phases), bool)
 
     def solve(self) -> Settled:
@@ -52,32 +55,43 @@ class Openings:
         everything = np.arange(self.network.plant.phases)
         settled = self._settle(self.place, everything)
         unsettled = everything
-        for method in (self._in_turn, self._together, self._one_in_another, self._one_in_another):
+        nested = [self._one_in_another] * NESTED_TRIES
+        for method in (self._in_turn, self._together, *nested):
             unsettled = self._unsettled(settled, unsettled)
             if not unsettled.size:
                 return settled
-            self.free[self.first_spool :, unsettled] |= self.seen_open[:, unsettled]
             method(unsettled)
             settled.put(unsettled, self._settle(self.place[:, unsettled], unsettled))
         settled.converged[self._unsettled(settled, unsettled)] = False
         return settled
 
     def _unsettled(self, settled: Settled, rows: Integers) -> Integers:
-        """Those of some phases in which an unknown is not where it should be."""
+        """Those of some phases in which an unknown is not where it should be; it comes into play there."""
         part = settled.take(rows)
-        off = (np.abs(self._excess(self.place[:, rows], part, rows)) / self.tolerance).max(axis=0, initial=0.0) > 1.0
-        return rows[off | part.throttled.open_way.any(axis=0)]
+        self.free[self.first_spool :, rows] |= self.seen_open[:, rows]
+        off = self._off(self.place[:, rows], part, rows) > 1.0
+        off[self.first_spool :] |= part.throttled.open_way
+        self.in_play[:, rows] |= off
+        return rows[off.any(axis=0)]
+
+    def _off(self, place: Array, settled: Settled, rows: Integers) -> Array:
+        """What each free unknown is off by per its tolerance [-], shape (unknowns, rows)."""
+        return np.abs(self._excess(place, settled, rows)) / self.tolerance
 
     def _in_turn(self, rows: Integers) -> None:
-        """Find each unknown by itself, one after the other, in place."""
+        """Find each unknown that is off by itself, one after the other, in place."""
         for number, free in enumerate(self.free):
             these = rows[free[rows]]
-            if these.size:
-                self.place[:, these] = self._nested([number], self.place[:, these], these)
+            if not these.size:
+                continue
+            place = self.place[:, these]
+            off = self._off(place, self._settle(place, these), these)[number] > 1.0
+            if off.any():
+                self.place[:, these[off]] = self._nested([number], place[:, off], these[off])
 
     def _one_in_another(self, rows: Integers) -> None:
-        """Find all unknowns of each phase, those behind each found anew at every trial of it, in place."""
-        patterns, which = np.unique(self.free[:, rows], axis=1, return_inverse=True)
+        """Find all unknowns in play, those behind each found anew at every trial of it, in place."""
+        patterns, which = np.unique(self.in_play[:, rows], axis=1, return_inverse=True)
         for number, pattern in enumerate(patterns.T):
             these = rows[which.reshape(-1) == number]
             self.place[:, these] = self._nested(np.flatnonzero(pattern).tolist(), self.place[:, these], these)
@@ -108,6 +122,7 @@ class Openings:
             if not rows.size:
                 return
             excess = self._excess(place, self._settle(place, rows), rows)
+            self.in_play[:, rows] |= np.abs(excess) > self.tolerance
             worst = (np.abs(excess) / self.tolerance).max(axis=0, initial=0.0)
             going = worst > 0.1
             if not going.any():
@@ -116,8 +131,7 @@ class Openings:
             step = self._newton_step(place, excess, rows)
             for halving in range(HALVINGS):
                 trial = np.clip(place + step * 0.5**halving, self.least[:, None], 1.0)
-                after = self._excess(trial, self._settle(trial, rows), rows)
-                after = (np.abs(after) / self.tolerance).max(axis=0, initial=0.0)
+                after = self._off(trial, self._settle(trial, rows), rows).max(axis=0, initial=0.0)
                 better = after < worst
                 place[:, better], worst[better] = trial[:, better], after[better]
                 step[:, better] = 0.0
@@ -130,8 +144,8 @@ class Openings:
         unknowns, phases = place.shape
         slopes = np.zeros((phases, unknowns, unknowns))
         slopes[:] = np.eye(unknowns)
-        for number in np.flatnonzero(self.free[:, rows].any(axis=1)):
-            free = self.free[number, rows]
+        for number in np.flatnonzero(self.in_play[:, rows].any(axis=1)):
+            free = self.in_play[number, rows]
             change = np.where(place[number] > 0.5, -DIFFERENCE, DIFFERENCE) * free
             trial = place.copy()
             trial[number] += change

@@ -146,7 +146,7 @@ def _dead_ends(branches: Branches, pattern: Pattern, state: Spread) -> None:
     quiet = [k for k in np.flatnonzero(branches.open[:, rows[0]]) if k not in living]
     ways = [k for k in quiet if branches.items[k].role not in MOVES]
     blocked = [k for k in quiet if branches.items[k].role in MOVES]
-    _pass_on(branches, rows, state, known, ways)
+    _pass_on(branches, rows, state, known, [k for k in ways if not branches.items[k].one_way])
     for k in blocked:
         item = branches.items[k]
         gain = branches.gain[k, rows]

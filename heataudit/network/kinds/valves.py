@@ -117,6 +117,10 @@ KINDS: dict[str, Callable[[Any, Plant, Ends], list[Branch]]] = {
 """Kind -> how it enters the network."""
 
 
+SHUT = 1e-10
+"""Opening [-] that counts as shut of a valve that is open at rest: it still feels the pressure that would open it."""
+
+
 class ValveOpening(Unknown):
     """Flow [-] that a valve lets pass per that of its rated point at the same drop, as its pilots decide.
 
@@ -128,6 +132,8 @@ class ValveOpening(Unknown):
     def __init__(self, at_rest: float, plant: Plant, branch: int, urge: Callable[[Look], Array]) -> None:
         """Shut (0) or open (1) at rest."""
         super().__init__(np.full(plant.phases, at_rest), np.ones(plant.phases, bool))
+        if at_rest == 1.0:
+            self.least = SHUT
         self.branch, self.urge = branch, urge
 
     def set(self, trial: Trial, place: Array, rows: Integers) -> None:
