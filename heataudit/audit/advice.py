@@ -11,7 +11,8 @@ from heataudit.audit.cold_start import LEAST_INLET
 from heataudit.audit.figures import BAR, sig
 from heataudit.audit.findings import Solved, share_of_shaft
 from heataudit.audit.model import Conditions, Cooler, Finding, Thermal
-from heataudit.machine import Machine
+from heataudit.machine import Cycle, Machine
+from heataudit.network.solution import Solution
 from heataudit.physics.constants import KELVIN
 
 LEAST_VISCOSITY, MOST_VISCOSITY = 10.0, 500.0
@@ -27,11 +28,14 @@ IDLE_SHARE = 0.10
 """Idle losses per shaft energy [-] from which they are reported (judgement)."""
 
 
+FAR_TOO_HOT_K = 20.0
+"""Excess over the highest oil temperature [K] from which the finding is a danger (judgement)."""
+
 WASTES = {
     "throttling": (
         "metering", METERING_SHARE, "are throttled away in metering",
-        "Match the pump to the flow asked for: load sensing, variable speed, a lower setting, or a circuit of its own for "
-        "a function whose load is far below the others.",
+        "Match the pump to the flow asked for: load sensing, variable speed, a lower setting, or a circuit of its "
+        "own for a function whose load is far below the others.",
     ),
     "idle-loss": (
         "idle", IDLE_SHARE, "are lost while nothing moves",
@@ -65,6 +69,28 @@ def waste_findings(solved: Solved) -> Iterator[Finding]:
         )  # fmt: skip
 
 
+def unsolved_findings(place: str, cycle: Cycle, solution: Solution) -> Iterator[Finding]:
+    """Phases that were not solved at another oil temperature than that of the audit.
+
+    Parameters
+    ----------
+    place
+        What rests on the solution.
+    cycle
+        The phases.
+    solution
+        What the network found for them.
+    """
+    failed = np.flatnonzero(~solution.converged)
+    if len(failed):
+        worst = failed[int(np.argmax(solution.residual[failed]))]
+        yield Finding(
+            "not-converged", "danger", place, str(cycle.phase[worst]),
+            f"Pressures and flows could not be solved with oil of {sig(solution.oil_temperature[worst] - KELVIN)} "
+            f"°C. Do not use what rests on it. In {len(failed)} of {len(cycle)} phases, most in {cycle.phase[worst]}.",
+        )  # fmt: skip
+
+
 def oil_findings(conditions: Conditions, thermal: Thermal, cooler: Cooler) -> Iterator[Finding]:
     """Oil that is too hot, too thin or too thick.
 
@@ -85,12 +111,17 @@ def oil_findings(conditions: Conditions, thermal: Thermal, cooler: Cooler) -> It
             f"machine overheats if it runs on. The audit is made at {sig(conditions.oil_temperature_C)} °C. Mend the "
             "sources of heat first, then see the cooler.",
         )  # fmt: skip
-    elif max(found, conditions.oil_temperature_C) > highest:
-        hot = max(found, conditions.oil_temperature_C)
+    elif found > highest:
         yield Finding(
-            "oil-too-hot", "danger" if hot > highest + 20 else "warning", "Oil", "",
-            f"The oil reaches {sig(hot)} °C at {sig(conditions.ambient_temperature_C)} °C ambient, above the "
+            "oil-too-hot", "danger" if found > highest + FAR_TOO_HOT_K else "warning", "Oil", "",
+            f"The oil reaches {sig(found)} °C at {sig(conditions.ambient_temperature_C)} °C ambient, above the "
             f"{sig(highest)} °C that it may have. Make less heat, or fit a cooler.",
+        )  # fmt: skip
+    elif conditions.oil_temperature_C > highest:
+        yield Finding(
+            "oil-too-hot", "warning", "Oil", "",
+            f"The oil temperature given, {sig(conditions.oil_temperature_C)} °C, is above the {sig(highest)} °C that "
+            f"it may have; by the heat balance it is {sig(found)} °C. Check the reading, then the cooler.",
         )  # fmt: skip
     if cooler.needed and cooler.choice is None and len(cooler.options):
         yield Finding("oil-too-hot", "warning", "Cooler", "", cooler.verdict)

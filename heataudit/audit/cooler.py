@@ -10,7 +10,7 @@ import pandas as pd
 
 from heataudit.audit.figures import L_MIN, sig
 from heataudit.audit.model import Cooler
-from heataudit.audit.options import COLUMNS, DesignCase, rank_options
+from heataudit.audit.options import COLUMNS, NEGLIGIBLE, DesignCase, rank_options
 from heataudit.audit.surroundings import cycle_mean, other_heat
 from heataudit.audit.thermal import HeatCurve, Sample
 from heataudit.audit.window import Window, hottest_window
@@ -44,7 +44,7 @@ def size_cooler(curve: HeatCurve, cycle: Cycle, hot: Sample, window_length: floa
     existing = float(machine.reservoir["cooler_capacity"])
     per_kelvin = case.needed / (1.0 + reserve)
     options = rank_options(machine.coolers, case)
-    needed = per_kelvin > existing
+    needed = per_kelvin > existing * (1 + NEGLIGIBLE)
     chosen = options.iloc[0] if needed and len(options) and options["enough"].iloc[0] else None
     flow = case.oil_flow if chosen is None else float(chosen["flow"])
     hot_drop, cold_drop = _drops(curve, chosen)

@@ -134,8 +134,8 @@ def _soundness(solved: Solved) -> Iterator[Finding]:
     machine = str(solved.machine.general["machine"])
     yield from solved.note(
         Place("not-converged", "danger", machine), ~solution.converged, solution.residual,
-        "Pressures and flows could not be solved: after {steps} steps {residual} % of the flow are still out of "
-        "balance. Do not use the numbers of such a phase; check its loads, settings and openings.",
+        "Pressures and flows could not be solved: the worst residual is {residual} % after {steps} steps. Do not "
+        "use the numbers of such a phase; check its loads, settings and openings.",
         steps=solution.iterations.astype(float), residual=100 * solution.residual,
     )  # fmt: skip
     error, shaft = np.abs(solution.balance_error), np.abs(solution.shaft_power)

@@ -123,9 +123,7 @@ def entries(machine: Machine, solution: Solution, let_down: Array) -> Iterator[E
             yield Entry(name, kind, "lowering", lowering)
             heat = heat - lowering
         yield from _shared(Entry(name, kind, GROUP_OF_KIND[kind], heat), moving)
-    for name, kind, heat in zip(
-        solution.actuators.name, solution.actuators.kind, solution.actuators.heat, strict=True
-    ):
+    for name, kind, heat in zip(solution.actuators.name, solution.actuators.kind, solution.actuators.heat, strict=True):
         yield Entry(name, kind, "actuators", heat)
     yield Entry(LET_DOWN, "trapped oil", "other", let_down)
 

@@ -149,7 +149,7 @@ class Audit:
         `pressure_start_bar`, `pressure_height_bar`, `power_kW`. Areas sum to the hydraulic power of the pumps.
     `cold_start`
         pump in the worst phase at the start temperature: `pump`, `phase`, `viscosity_mm2_s`, `pressure_bar`,
-        `relief_flow_L_min`, `inlet_bar`.
+        `relief_flow_L_min`, `inlet_bar` (absolute).
 
     `loss_groups` maps each of `GROUPS` to its heat [kJ] in one cycle; `drives` has a row per drive with `drive`,
     `kind`, `peak_shaft_kW`, `mean_shaft_kW`, `power_limit_kW` (NaN none), `annual_input_kWh`, `annual_fuel_L`.

@@ -19,7 +19,7 @@ WATER_HEAT = 4.16e6
 """Heat that a volume of cooling water carries per kelvin [J/(m³·K)] (water at 20 to 30 °C, common tables)."""
 
 NEGLIGIBLE = 1e-9
-"""Share [-] by which an oil flow may lie beside a curve and still be covered."""
+"""Share [-] by which an oil flow may lie beside a curve, or a capacity below what is needed: rounding."""
 
 COLUMNS = (
     "cooler", "kind", "oil_flow_L_min", "offered_kW_K", "oil_temperature_C", "pressure_drop_bar", "fan_power_kW",
@@ -126,7 +126,8 @@ def _option(name: str, rows: pd.DataFrame, case: DesignCase) -> dict[str, Any]:
         "offered_kW_K": offered / 1e3, "oil_temperature_C": np.nan if warm is None else warm - KELVIN,
         "pressure_drop_bar": at_flow("pressure_drop") / BAR if covered else np.nan,
         "fan_power_kW": at_flow("fan_power") / 1e3, "price": float(first["price"]),
-        "enough": bool(covered and offered >= case.needed), "remark": _remark(rows, flow, offered, case),
+        "enough": bool(covered and offered >= case.needed * (1 - NEGLIGIBLE)),
+        "remark": _remark(rows, flow, offered, case),
         "flow": flow,
     }  # fmt: skip
 
@@ -137,7 +138,7 @@ def _remark(rows: pd.DataFrame, flow: float, offered: float, case: DesignCase) -
         if flows[0] * (1 - NEGLIGIBLE) <= flow <= flows[-1] * (1 + NEGLIGIBLE):
             return "no exchanger can have this capacity at these flows of oil and water; check the list"
         return f"its curve does not cover {sig(flow / L_MIN)} L/min"
-    if offered < case.needed:
+    if offered < case.needed * (1 - NEGLIGIBLE):
         return f"gives {sig(100 * offered / case.needed)} % of what is needed"
     return "enough"
 
@@ -159,7 +160,7 @@ def rank_options(coolers: pd.DataFrame, case: DesignCase) -> pd.DataFrame:
     """
     options = [_option(str(name), rows, case) for name, rows in coolers.groupby("name", sort=False)]
     table = pd.DataFrame(options, columns=[*COLUMNS, "flow"]).astype({"enough": bool})
-    shortfall = (case.needed / 1e3 - table["offered_kW_K"]).clip(lower=0.0)
+    shortfall = (case.needed / 1e3 - table["offered_kW_K"]).where(~table["enough"], 0.0)
     return (
         table.assign(shortfall=shortfall)
         .sort_values(["shortfall", "price", "fan_power_kW", "offered_kW_K"], na_position="last", ignore_index=True)

@@ -32,7 +32,7 @@ TABLE_COLUMNS = (
 
 
 def hydraulic_power(solution: Solution) -> tuple[Array, Array]:
-    """Hydraulic power [W] of all pumps and the flow [m³/s] that they deliver, shape (phases,).
+    """Hydraulic power [W] of all pumps and the flow [m³/s] that they deliver, whichever way, shape (phases,).
 
     Power is the sum of flow x (outlet less inlet pressure).
 
@@ -42,7 +42,8 @@ def hydraulic_power(solution: Solution) -> tuple[Array, Array]:
         The solved phases.
     """
     pumps = solution.pumps
-    return (pumps.flow * (pumps.pressure - pumps.inlet_pressure)).sum(axis=0), pumps.flow.sum(axis=0)
+    drop = pumps.pressure - pumps.inlet_pressure
+    return np.asarray((pumps.flow * drop).sum(axis=0)), np.asarray(np.abs(pumps.flow).sum(axis=0))
 
 
 def shares(solution: Solution, losses: Losses) -> dict[str, Array]:

@@ -6,18 +6,18 @@ from importlib.metadata import PackageNotFoundError, version
 
 import pandas as pd
 
-from heataudit.audit.advice import cold_findings, oil_findings, waste_findings
+from heataudit.audit.advice import cold_findings, oil_findings, unsolved_findings, waste_findings
 from heataudit.audit.annual import drive_table, drives, with_annual, year
 from heataudit.audit.cold_start import cold_start_table
 from heataudit.audit.cooler import size_cooler
 from heataudit.audit.findings import Solved, phase_findings
 from heataudit.audit.lines import line_table
 from heataudit.audit.losses import find_losses, phase_table, totals
-from heataudit.audit.model import Audit, Conditions, Cooler, Finding, Thermal
+from heataudit.audit.model import Audit, Conditions, Finding, Thermal
 from heataudit.audit.rectangles import rectangle_table
 from heataudit.audit.states import Solver, network, solve_at
 from heataudit.audit.surroundings import Surroundings, cycle_mean, other_heat
-from heataudit.audit.thermal import Balance, HeatCurve, find_balance, heat_curve, sample
+from heataudit.audit.thermal import Balance, HeatCurve, Sample, find_balance, heat_curve, sample
 from heataudit.audit.warm_up import ripple, warm_up, warm_up_table
 from heataudit.machine import Cycle, Machine
 from heataudit.network.solution import Solution
@@ -43,24 +43,19 @@ def audit(machine: Machine, solver: Solver = network) -> Audit:
     """
     cycle, around = machine.cycle, Surroundings(machine)
     curve = heat_curve(around, cycle, solver)
-    capacity = float(machine.reservoir["cooler_capacity"])
-    balance = find_balance(curve, cycle, solver, capacity)
-    bare = balance if capacity == 0 else find_balance(curve, cycle, solver, 0.0)
+    cold_table, cold_notes = _cold_start(machine, solver)
+    hot, hot_notes = _hottest(around, cycle, solver)
+    bare, balance = _balances(curve, cycle, solver)
     temperature, basis, solution = _conditions(machine, balance, solver)
-    general = machine.general
-    cold, hot = solve_at(solver, machine, cycle, [general["start_temperature"], general["highest_oil_temperature"]])
 
     losses = find_losses(machine, cycle, solution)
     energies = totals(cycle, solution, losses)
-    window = around.time_constant(temperature)
-    cooler = size_cooler(curve, cycle, sample(around, cycle, hot), window)
-    found = drives(machine, solution, losses)
-    driven = drive_table(machine, cycle, found)
+    solved = Solved(machine, cycle, solution, losses, drives(machine, solution, losses))
+    cooler = size_cooler(curve, cycle, hot, around.time_constant(temperature))
+    driven = drive_table(machine, cycle, solved.drives)
     annual = year(machine, energies, driven, cooler)
     conditions = _state(around, temperature, basis)
-    thermal = _thermal(curve, cycle, (balance, bare), (temperature, energies.mean_heat_kW))
-    cold_table = cold_start_table(machine, cycle, cold)
-    solved = Solved(machine, cycle, solution, losses, found)
+    thermal = _thermal(cycle, balance, bare, (temperature, energies.mean_heat_kW))
     return Audit(
         machine=machine,
         solution=solution,
@@ -77,8 +72,37 @@ def audit(machine: Machine, solver: Solver = network) -> Audit:
         cooler=cooler,
         annual=annual,
         cold_start=cold_table,
-        findings=_findings(solved, conditions, thermal, cooler, (cold_table, cold)),
+        findings=_in_order(
+            *phase_findings(solved),
+            *hot_notes,
+            *oil_findings(conditions, thermal, cooler),
+            *waste_findings(solved),
+            *cold_notes,
+        ),
     )
+
+
+def _balances(curve: HeatCurve, cycle: Cycle, solver: Solver) -> tuple[tuple[float | None, HeatCurve], Balance | None]:
+    """Without a cooler: where the oil ends [K] and the curve through that point; with the existing one: the balance."""
+    capacity = float(curve.surroundings.machine.reservoir["cooler_capacity"])
+    balance = find_balance(curve, cycle, solver, 0.0)
+    bare = (None, curve) if balance is None else (balance.temperature, balance.curve)
+    return bare, balance if capacity == 0 else find_balance(curve, cycle, solver, capacity)
+
+
+def _cold_start(machine: Machine, solver: Solver) -> tuple[pd.DataFrame, list[Finding]]:
+    """The pumps at the start temperature, and what to look at there."""
+    (cold,) = solve_at(solver, machine, machine.cycle, [machine.general["start_temperature"]])
+    table = cold_start_table(machine, machine.cycle, cold)
+    viscosity = float(cold.viscosity[0]) * 1e6
+    unsolved = unsolved_findings("Cold start", machine.cycle, cold)
+    return table, [*unsolved, *cold_findings(machine, table, viscosity)]
+
+
+def _hottest(around: Surroundings, cycle: Cycle, solver: Solver) -> tuple[Sample, list[Finding]]:
+    """The cycle at the highest oil temperature, and phases that were not solved there."""
+    (hot,) = solve_at(solver, around.machine, cycle, [around.machine.general["highest_oil_temperature"]])
+    return sample(around, cycle, hot), list(unsolved_findings("Cooler", cycle, hot))
 
 
 def _conditions(machine: Machine, balance: Balance | None, solver: Solver) -> tuple[float, str, Solution]:
@@ -103,28 +127,28 @@ def _state(around: Surroundings, temperature: float, basis: str) -> Conditions:
 
 
 def _thermal(
-    curve: HeatCurve, cycle: Cycle, balances: tuple[Balance | None, Balance | None], now: tuple[float, float]
+    cycle: Cycle, balance: Balance | None, bare: tuple[float | None, HeatCurve], now: tuple[float, float]
 ) -> Thermal:
-    """The heat balance: equilibria with and without the cooler, and the tank at the audit's temperature and heat."""
+    """The heat balance with and without the cooler, and the tank at the audit's temperature [K] and heat [kW]."""
+    bare_end, bare_curve = bare
+    end, curve = (None, bare_curve) if balance is None else (balance.temperature, balance.curve)
     around, machine = curve.surroundings, curve.surroundings.machine
     capacity = float(machine.reservoir["cooler_capacity"])
     temperature, mean_heat_kW = now
-    ends = [None if balance is None else balance.temperature for balance in balances]
-    curves = [curve if balance is None else balance.curve for balance in balances]
-    runs = [warm_up(c, k, end) for c, k, end in zip(curves, (capacity, 0.0), ends, strict=True)]
+    with_cooler, without_cooler = warm_up(curve, capacity, end), warm_up(bare_curve, 0.0, bare_end)
     return Thermal(
         mean_heat_kW=mean_heat_kW + cycle_mean(cycle, other_heat(machine, cycle)) / 1e3,
         tank_dissipation_kW=float(around.tank.heat(temperature, around.ambient)) / 1e3,
         tank_coefficient_W_m2K=float(around.tank.conductance(temperature, around.ambient)) / around.surface,
-        equilibrium_C=None if ends[0] is None else ends[0] - KELVIN,
-        equilibrium_without_cooler_C=None if ends[1] is None else ends[1] - KELVIN,
-        warm_up_min=None if runs[0].warm_after is None else runs[0].warm_after / 60.0,
-        ripple_K=None if balances[0] is None else ripple(balances[0], cycle, capacity),
+        equilibrium_C=None if end is None else end - KELVIN,
+        equilibrium_without_cooler_C=None if bare_end is None else bare_end - KELVIN,
+        warm_up_min=None if with_cooler.warm_after is None else with_cooler.warm_after / 60.0,
+        ripple_K=None if balance is None else ripple(balance, cycle, capacity),
         time_constant_min=around.time_constant(temperature) / 60.0,
         start_temperature_C=float(machine.general["start_temperature"]) - KELVIN,
         highest_temperature_C=float(machine.general["highest_oil_temperature"]) - KELVIN,
-        heat_curve=curves[0].table(),
-        warm_up=warm_up_table(*runs),
+        heat_curve=curve.table(),
+        warm_up=warm_up_table(with_cooler, without_cooler),
     )
 
 
@@ -132,17 +156,8 @@ def _with_shares(table: pd.DataFrame, heat_kJ: float) -> pd.DataFrame:
     return table.assign(share=table["heat_kJ"] / heat_kJ if heat_kJ else 0.0)
 
 
-def _findings(
-    solved: Solved, conditions: Conditions, thermal: Thermal, cooler: Cooler, start: tuple[pd.DataFrame, Solution]
-) -> tuple[Finding, ...]:
-    """All findings, the gravest first."""
-    table, cold = start
-    found = [
-        *phase_findings(solved),
-        *oil_findings(conditions, thermal, cooler),
-        *waste_findings(solved),
-        *cold_findings(solved.machine, table, float(cold.viscosity[0]) * 1e6),
-    ]
+def _in_order(*found: Finding) -> tuple[Finding, ...]:
+    """Findings, the gravest first."""
     return tuple(sorted(found, key=lambda finding: SEVERITIES.index(finding.severity)))
 
 

@@ -35,8 +35,9 @@ CHILLED = 60.0
 AGREEMENT = 0.005
 """Difference [K] up to which two approximations of an equilibrium agree."""
 
-MOST_ROUNDS = 12
+MOST_ROUNDS = 30
 """Approximations of an equilibrium at most."""
+
 
 @dataclass(frozen=True)
 class Sample:
@@ -286,7 +287,8 @@ class Balance:
 def find_balance(curve: HeatCurve, cycle: Cycle, solver: Solver, capacity: float) -> Balance | None:
     """The temperature at which as much heat goes out as comes in at yearly ambient, to 0.01 K; None below 120 °C.
 
-    The cycle is solved at the temperature that the curve gives, the curve is scaled to what was found, and so on.
+    The cycle is solved at the temperature that the curve gives, the curve is scaled to what was found, and so on. Where
+    the heat jumps, temperatures on either side of the jump close in on it.
 
     Parameters
     ----------
@@ -300,13 +302,28 @@ def find_balance(curve: HeatCurve, cycle: Cycle, solver: Solver, capacity: float
         Of the cooler [W/K].
     """
     around = curve.surroundings
-    balance = None
+    balance, too_cold, too_hot = None, -np.inf, np.inf
     for _ in range(MOST_ROUNDS):
         temperature = curve.equilibrium(around.ambient, capacity)
+        if (
+            balance
+            and np.isfinite(too_hot - too_cold)
+            and (temperature is None or _off(temperature, too_cold, too_hot))
+        ):
+            temperature = 0.5 * (too_cold + too_hot)
         if temperature is None or (balance and abs(temperature - balance.temperature) < AGREEMENT):
             return balance if temperature is not None else None
         (solution,) = solve_at(solver, around.machine, cycle, [temperature])
         found = sample(around, cycle, solution)
         curve = curve.through(temperature, found)
         balance = Balance(temperature, solution, found, curve)
+        if curve.coming(temperature) > curve.going(temperature, around.ambient, capacity):
+            too_cold = temperature
+        else:
+            too_hot = temperature
     return balance
+
+
+def _off(temperature: float, low: float, high: float) -> bool:
+    """Whether a temperature [K] lies outside a range by more than what counts as agreement."""
+    return not low - AGREEMENT < temperature < high + AGREEMENT

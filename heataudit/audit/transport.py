@@ -33,8 +33,8 @@ class Way(NamedTuple):
 def passing(machine: Machine, cycle: Cycle, solution: Solution, component: str) -> tuple[Array, Array]:
     """Flow through a component [m³/s] and heat that reaches it [W] with the oil, both of shape (phases,).
 
-    The heat is that of all components upstream since the tank. Where ways part, the heat parts as the flow does. Of a
-    pump's heat the part that its slip sets free leaves by the drain. Oil that comes out of an actuator carries the heat
+    The heat is that of all components upstream since the tank. Where ways part, the heat parts as the flow does; slip
+    parts behind the pump and leaves by the drain. Oil that comes out of an actuator carries the heat
     of the oil that goes in, as it does over repeated cycles.
 
     Parameters
@@ -92,6 +92,7 @@ def _carried(ways: list[Way], nodes: int) -> tuple[Array, Array]:
 def _ways(machine: Machine, cycle: Cycle, solution: Solution) -> list[tuple[str, Way]]:
     """All ways of the oil with the names of their components; a section's way back carries what arrives for it."""
     found = [*_pumps(machine, solution), *_two_ports(machine, solution)]
+    found += _surplus(machine, solution, found)
     for actuator in rows_of(machine.actuators):
         for forward in (True, False):
             found += _actuator(actuator, cycle, solution, forward)
@@ -101,15 +102,30 @@ def _ways(machine: Machine, cycle: Cycle, solution: Solution) -> list[tuple[str,
 
 
 def _pumps(machine: Machine, solution: Solution) -> Iterator[tuple[str, Way]]:
+    """From suction to outlet, or back where a closed loop runs backwards; slip leaves the high side by the drain."""
     state, node = solution.pumps, solution.ports.node
     rows = {row.name: row for row in rows_of(machine.pumps)}
     for k, name in enumerate(state.name):
         row = rows[name]
         suction, outlet, drain = (node(label or TANK) for label in (row.suction, row.outlet, row.drain_to))
-        slip = np.maximum(state.slip[k], 0.0)
-        slipped = slip * np.maximum(state.pressure[k] - np.nan_to_num(solution.pressure[drain]), 0.0)
-        yield name, Way(suction, outlet, np.maximum(state.flow[k], 0.0), state.heat[k] - slipped)
-        yield f"{name} drain", Way(suction, drain, slip, slipped)
+        swept = state.flow[k] + state.slip[k]
+        for sign, low, high in ((1.0, suction, outlet), (-1.0, outlet, suction)):
+            goes = np.sign(swept) == sign
+            slip = np.where(goes, np.maximum(sign * state.slip[k], 0.0), 0.0)
+            slipped = slip * np.maximum(np.nan_to_num(solution.pressure[high] - solution.pressure[drain]), 0.0)
+            yield name, Way(low, high, np.where(goes, np.abs(swept), 0.0), np.where(goes, state.heat[k], 0.0) - slipped)
+            yield f"{name} drain", Way(high, drain, slip, slipped)
+
+
+def _surplus(machine: Machine, solution: Solution, ways: list[tuple[str, Way]]) -> Iterator[tuple[str, Way]]:
+    """What priority valves send to their third port: what arrives at From and does not leave it otherwise."""
+    for valve in rows_of(machine.valves):
+        if valve.kind == "priority" and valve.port_3:
+            port = solution.ports.node(valve.from_)
+            nothing = np.zeros(solution.phases)
+            left = nothing + sum(way.flow for _, way in ways if way.end == port)
+            left = left - sum(way.flow for _, way in ways if way.start == port)
+            yield f"{valve.name} surplus", Way(port, solution.ports.node(valve.port_3), np.maximum(left, 0.0), nothing)
 
 
 def _two_ports(machine: Machine, solution: Solution) -> Iterator[tuple[str, Way]]:

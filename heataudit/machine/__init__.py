@@ -3,11 +3,11 @@
 from __future__ import annotations
 
 from heataudit.machine.blank import write_blank
-from heataudit.machine.model import Cycle, Machine, Move, Problem, WorkbookError
+from heataudit.machine.model import Cycle, Machine, Move, Problem, WorkbookError, rows
 from heataudit.machine.ports import TANK, Ports, connect
 from heataudit.machine.read import read_machine
 
 __all__ = [
-    "TANK", "Cycle", "Machine", "Move", "Ports", "Problem", "WorkbookError", "connect", "read_machine",
+    "TANK", "Cycle", "Machine", "Move", "Ports", "Problem", "WorkbookError", "connect", "read_machine", "rows",
     "write_blank",
 ]  # fmt: skip

@@ -6,6 +6,7 @@ from collections.abc import Callable, Mapping
 
 import numpy as np
 
+from heataudit.machine.ports import TANK
 from heataudit.machine.sheet import Sheet
 from heataudit.machine.sizes import inside_diameter, path_flow
 from heataudit.machine.tables.readings import QUANTITIES
@@ -22,7 +23,9 @@ def check_contradictions(sheets: Sheets) -> None:
     _check_lines(sheets["lines"])
     for key in ("lines", "valves"):
         _check_ends(sheets[key])
+    _check_pumps(sheets["pumps"])
     _check_banks(sheets["sections"])
+    _check_feeds(sheets["sections"])
     _check_actuators(sheets["actuators"])
     _check_oil(sheets["oil"])
     _check_reservoir(sheets["reservoir"])
@@ -50,6 +53,33 @@ def _check_ends(sheet: Sheet) -> None:
     sheet.complain(
         "to", same, lambda row: f'is "{sheet.frame["to"].iloc[row]}", as From is; it must be another port label'
     )
+
+
+def _check_pumps(sheet: Sheet) -> None:
+    """Slip comes from an efficiency or from one whole measurement; a closed loop has two sides."""
+    tested = sheet.is_typed("test_flow")
+    part = tested & ~(sheet.is_typed("test_pressure") & sheet.is_typed("test_speed"))
+    text = "is given without Test pressure and Test speed; give all three"
+    sheet.complain("test_flow", np.flatnonzero(part), text)
+    both = tested & sheet.is_typed("volumetric_efficiency")
+    text = "and Volumetric efficiency are both given; leave one of the two blank"
+    sheet.complain("test_flow", np.flatnonzero(both), text)
+    ideal = (sheet.frame["displacement"] * sheet.frame["test_speed"]).to_numpy(float)
+    above = tested & (sheet.frame["test_flow"].to_numpy(float) >= ideal)
+    sheet.complain("test_flow", np.flatnonzero(above), lambda row: (
+        f"is {sheet.shown('test_flow', row)}; it must be less than Displacement x Test speed, "
+        f"{ideal[row] * 60e3:.4g} L/min"
+    ))  # fmt: skip
+    open_loop = (sheet.frame["control"] == "set displacement") & (sheet.frame["suction"].map(folded) == folded(TANK))
+    text = f'is "{TANK}"; the pump of a closed loop needs the port label of the loop\'s other side'
+    sheet.complain("suction", np.flatnonzero(open_loop.to_numpy(bool)), text)
+
+
+def _check_feeds(sheet: Sheet) -> None:
+    """A section in series stands in the gallery."""
+    closed = (sheet.frame["feed"] == "series") & (sheet.frame["centre"] == "closed")
+    text = 'is "series", and Centre is "closed"; a section fed in series has an open centre'
+    sheet.complain("feed", np.flatnonzero(closed.to_numpy(bool)), text)
 
 
 def _check_banks(sheet: Sheet) -> None:

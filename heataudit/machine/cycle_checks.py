@@ -124,9 +124,11 @@ def _check_paths(cycle: CycleSheet, actuator: Any, sheets: Sheets, ports: Ports)
     section = sheets["sections"].frame.iloc[row]
     moves = _moves(cycle, actuator.name)
     plunger = actuator.kind == "plunger"
-    needs = [(TO_A, "p_a"), (("retract",), "a_t")] if plunger else [(TO_A, "p_a"), (TO_B, "p_b")]
+    needs = [(TO_A, "p_a"), (("retract", "float"), "a_t")]
     if not plunger:
-        back = tuple(move for move in TO_A if move != "press")
+        needs = [(TO_A, "p_a"), (TO_B, "p_b"), (("float",), "a_t"), (("float",), "b_t")]
+        regenerates = section["regeneration"] == "extend"
+        back = tuple(move for move in TO_A if move != "press" and not (regenerates and move == "extend"))
         for words, path, port in ((back, "b_t", actuator.port_b), (TO_B, "a_t", actuator.port_a)):
             if not _leads_on(port, sheets, ports):
                 needs.append((words, path))

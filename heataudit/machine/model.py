@@ -60,6 +60,11 @@ class Move(IntEnum):
     FLOAT = 7
 
 
+def rows(table: pd.DataFrame) -> list[Any]:
+    """Components of a table as named tuples."""
+    return list(table.itertuples(index=False))
+
+
 @dataclass(frozen=True)
 class Cycle:
     """A duty cycle of N phases, or N samples of a log, as arrays of shape (N,).

@@ -49,9 +49,9 @@ class Branch:
 
     `ratio` is the flow at the end per flow at the start [-], `gain` the weight [-] of the pressure at the end: the
     area ratio of a cylinder, else 1. A pump's slip and its displacement box are driven by other nodes than those
-    that they connect (`driven_from`, `driven_to`). A `lazy` branch is left out until the pressures would open it, or until the pressure
-    of the node `pilot` lifts it (`pilot_ratio` x pilot pressure against the pressure from end to start); then it stands
-    in the place of the component's branch of the role `replaces`.
+    that they connect (`driven_from`, `driven_to`). A `lazy` branch is left out until the pressures would open it, or
+    until the pressure of the node `pilot` lifts it (`pilot_ratio` x pilot pressure against the pressure from end to
+    start); then it stands in the place of the component's branch of the role `replaces`.
     """
 
     component: str

@@ -19,7 +19,8 @@ from heataudit.network.unknowns import Look, Trial
 
 NEWTON_STEPS = 8
 HALVINGS = 4
-NESTED_TRIES = 3
+TRIES = 4
+NESTED_AT_MOST = 2
 DIFFERENCE = 1e-6
 TOLERANCES = {"xatol": 1e-15, "xrtol": 1e-13, "fatol": 1e-14, "frtol": 0.0}
 
@@ -55,8 +56,7 @@ class Openings:
         everything = np.arange(self.network.plant.phases)
         settled = self._settle(self.place, everything)
         unsettled = everything
-        nested = [self._one_in_another] * NESTED_TRIES
-        for method in (self._in_turn, self._together, *nested):
+        for method in (*(self._in_turn, self._together) * TRIES, self._one_in_another, self._one_in_another):
             unsettled = self._unsettled(settled, unsettled)
             if not unsettled.size:
                 return settled
@@ -94,7 +94,8 @@ class Openings:
         patterns, which = np.unique(self.in_play[:, rows], axis=1, return_inverse=True)
         for number, pattern in enumerate(patterns.T):
             these = rows[which.reshape(-1) == number]
-            self.place[:, these] = self._nested(np.flatnonzero(pattern).tolist(), self.place[:, these], these)
+            if pattern.sum() <= NESTED_AT_MOST:
+                self.place[:, these] = self._nested(np.flatnonzero(pattern).tolist(), self.place[:, these], these)
 
     def _nested(self, numbers: list[int], place: Array, rows: Integers) -> Array:
         """Places with some unknowns, free in all the phases given, at their roots."""

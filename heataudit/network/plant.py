@@ -10,7 +10,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from heataudit.machine import TANK, Cycle, Machine, Move, Ports, Problem, WorkbookError
+from heataudit.machine import TANK, Cycle, Machine, Move, Ports, Problem, WorkbookError, rows
 from heataudit.network.kinds.loads import FORWARD, highest_load_pressure
 from heataudit.network.linear import Array
 from heataudit.network.topology import reached
@@ -47,7 +47,7 @@ class Command:
 
 
 LOAD_SHARE = 1.3
-"""Opening pressure [-] of a counterbalance valve per the highest load pressure, where none is given: common practice."""
+"""Opening pressure of a counterbalance valve per highest load pressure [-] where none is given: common practice."""
 
 
 def counterbalance_estimates(machine: Machine, ports: Ports) -> dict[str, float]:
@@ -55,7 +55,7 @@ def counterbalance_estimates(machine: Machine, ports: Ports) -> dict[str, float]
     blank = machine.valves[(machine.valves["kind"] == "counterbalance") & machine.valves["opening_pressure"].isna()]
     return {
         valve.name: LOAD_SHARE * highest_load_pressure(machine, ports, ports.node(valve.from_))
-        for valve in blank.itertuples(index=False)
+        for valve in rows(blank)
     }
 
 
@@ -172,4 +172,4 @@ class Plant:
 
     def rows_of(self, table: str) -> list[Any]:
         """Components of a table as named tuples."""
-        return list(getattr(self.machine, table).itertuples(index=False))
+        return rows(getattr(self.machine, table))

@@ -143,7 +143,7 @@ def _dead_ends(branches: Branches, pattern: Pattern, state: Spread) -> None:
     rows = pattern.rows
     known = ~np.isnan(state.pressure[:, rows[0]])
     living = {k for chain in pattern.chains for k, _ in chain.items}
-    quiet = [k for k in np.flatnonzero(branches.open[:, rows[0]]) if k not in living]
+    quiet = [k for k in np.flatnonzero(branches.open[:, rows[0]]).tolist() if k not in living]
     ways = [k for k in quiet if branches.items[k].role not in MOVES]
     blocked = [k for k in quiet if branches.items[k].role in MOVES]
     _pass_on(branches, rows, state, known, [k for k in ways if not branches.items[k].one_way])

@@ -32,9 +32,7 @@ class Trial:
 
     def placed(self) -> Branches:
         """The network with what was set."""
-        return replace(
-            self.branches, constant=self.constant, quadratic=self.quadratic, high=self.high, open=self.open
-        )
+        return replace(self.branches, constant=self.constant, quadratic=self.quadratic, high=self.high, open=self.open)
 
 
 class Look:

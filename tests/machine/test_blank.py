@@ -50,7 +50,10 @@ def test_every_column_has_a_header_and_a_remark(blank: Path) -> None:
 def test_words_have_drop_down_lists(blank: Path) -> None:
     sheet = openpyxl.load_workbook(blank)["Pumps"]
     lists = {str(item.sqref): item.formula1 for item in sheet.data_validations.dataValidation}
-    assert lists == {"B2:B300": '"gear,vane,piston"', "C2:C300": '"fixed,pressure compensated"'}
+    assert lists == {
+        "B2:B300": '"gear,vane,piston"',
+        "C2:C300": '"fixed,pressure compensated,load sensing,speed controlled,set displacement"',
+    }
 
 
 def test_example_rows_are_remarks_that_would_be_right(blank: Path, tmp_path: Path) -> None:

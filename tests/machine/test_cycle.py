@@ -146,7 +146,8 @@ def test_mistakes_in_a_log_name_its_file(tmp_path: Path) -> None:
         read(tmp_path, WITHOUT_CYCLE, cycle=log)
     assert str(caught.value).splitlines() == [
         "log.csv!A3: Duration is -2; it must be greater than 0 s",
-        'log.csv!B3: Ram move is "extnd"; it must be "hold", "extend", "retract" or "press"; did you mean "extend"?',
+        'log.csv!B3: Ram move is "extnd"; it must be "hold", "extend", "retract", "press" or "float"; '
+        'did you mean "extend"?',
         'log.csv!C3: Ram load is "x"; it must be a number',
         'log.csv!B4: Ram move is "extend" without a load; give "Ram load", 0 where there is none',
     ]

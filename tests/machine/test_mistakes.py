@@ -67,17 +67,28 @@ ONE_MISTAKE: list[tuple[Cells, str]] = [
     ),
     (
         {(PUMPS, "C2"): "fixd"},
-        'Pumps!C2: Control is "fixd"; it must be "fixed" or "pressure compensated"; did you mean "fixed"?',
+        'Pumps!C2: Control is "fixd"; it must be "fixed", "pressure compensated", "load sensing", "speed controlled" '
+        'or "set displacement"; did you mean "fixed"?',
     ),
     ({(PUMPS, "C2"): "pressure compensated"}, "Pumps!A2: Setting is blank; it must be given"),
     (
-        {(PUMPS, "C2"): "load sensing", (PUMPS, "G1"): "Setting [bar]", (PUMPS, "G2"): 200},
-        'Pumps!C2: Control is "load sensing", which this version does not compute yet; use "fixed" or "pressure '
-        'compensated"',
+        {(PUMPS, "G1"): "Test flow [L/min]", (PUMPS, "G2"): 20},
+        "Pumps!G2: Test flow is given without Test pressure and Test speed; give all three",
     ),
     (
-        {(PUMPS, "G1"): "Power limit [kW]", (PUMPS, "G2"): 9},
-        "Pumps!G2: Power limit is given, which this version does not compute yet; leave it blank",
+        {(PUMPS, "G1"): "Test flow [L/min]", (PUMPS, "G2"): 30, (PUMPS, "H1"): "Test pressure [bar]",
+         (PUMPS, "H2"): 150, (PUMPS, "I1"): "Test speed [rpm]", (PUMPS, "I2"): 1450},
+        "Pumps!G2: Test flow is 30; it must be less than Displacement x Test speed, 23.2 L/min",
+    ),
+    (
+        {(PUMPS, "G1"): "Test flow [L/min]", (PUMPS, "G2"): 20, (PUMPS, "H1"): "Test pressure [bar]",
+         (PUMPS, "H2"): 150, (PUMPS, "I1"): "Test speed [rpm]", (PUMPS, "I2"): 1450,
+         (PUMPS, "J1"): "Volumetric efficiency [%]", (PUMPS, "J2"): 90},
+        "Pumps!G2: Test flow and Volumetric efficiency are both given; leave one of the two blank",
+    ),
+    (
+        {(PUMPS, "C2"): "set displacement", (PUMPS, "G1"): "Setting [bar]", (PUMPS, "G2"): 300},
+        'Pumps!A2: Suction is "Tank"; the pump of a closed loop needs the port label of the loop\'s other side',
     ),
     ({(PUMPS, "E2"): None}, "Pumps!E2: Speed is blank; give it, or name a Drive that has a Speed"),
     ({(PUMPS, "G1"): "Drive", (PUMPS, "G2"): "Motor"}, 'Pumps!G2: Drive is "Motor", which is not on the sheet Drives'),
@@ -94,8 +105,8 @@ ONE_MISTAKE: list[tuple[Cells, str]] = [
     ({(LINES, "A3"): None}, "Lines!A3: Line is blank; it must be given"),
     ({(SECTIONS, "B2"): None}, "Directional valves!A2: P-A is blank; give it, or a Size such as NG10"),
     (
-        {(SECTIONS, "D1"): "Feed", (SECTIONS, "D2"): "tandem"},
-        'Directional valves!D2: Feed is "tandem", which this version does not compute yet; use "parallel"',
+        {(SECTIONS, "D1"): "Feed", (SECTIONS, "D2"): "series", (SECTIONS, "C2"): "closed"},
+        'Directional valves!D2: Feed is "series", and Centre is "closed"; a section fed in series has an open centre',
     ),
     ({(ACTUATORS, "E2"): 90}, "Actuators!E2: Rod is 90; it must be less than the Bore, 80 mm"),
     ({(ACTUATORS, "D2"): None}, "Actuators!D2: Bore is blank; it must be given"),
@@ -127,12 +138,12 @@ ONE_MISTAKE: list[tuple[Cells, str]] = [
     ),
     (
         {(CYCLE, "C2"): "forward"},
-        'Duty cycle!C2: Ram move is "forward"; it must be "hold", "extend", "retract" or "press"',
+        'Duty cycle!C2: Ram move is "forward"; it must be "hold", "extend", "retract", "press" or "float"',
     ),
     (
-        {(CYCLE, "C2"): "float"},
-        'Duty cycle!C2: Ram move is "float", which this version does not compute yet; use "hold", "extend", "retract" '
-        'or "press"',
+        {(CYCLE, "C2"): "float", (CYCLE, "E2"): None, (SECTIONS, "D1"): "A-T [L/min]", (SECTIONS, "D2"): 0,
+         (CYCLE, "C3"): "hold", (CYCLE, "D3"): None},
+        'Duty cycle!C2: Ram move is "float", but section Press has no path A-T: its flow there is 0',
     ),
     (
         {(SECTIONS, "D1"): "P-B [L/min]", (SECTIONS, "D2"): 0},

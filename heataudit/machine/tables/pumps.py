@@ -42,7 +42,7 @@ def _rated_viscosity(rows: pd.DataFrame, tables: Tables) -> pd.Series:
 
 
 def _test(header: str, make: object, help: str, **more: object) -> Column:
-    return make(header=header, help=help, above=0.0, **more)  # type: ignore[operator,no-any-return]
+    return make(header=header, help=help, above=0.0, **more)  # type: ignore[operator]
 
 
 PUMPS = Table(
@@ -112,7 +112,8 @@ PUMPS = Table(
             only_for=tuple(MARGINS),
             default={control: Default(bar, "common practice", 0.25) for control, bar in MARGINS.items()},
         ),
-        power(header="Power limit", help="Torque limit of a variable pump, at its speed.", above=0.0),
+        power(header="Power limit", help="Torque limit of a variable pump, at its speed.", above=0.0, by="control",
+              only_for=("pressure compensated", "load sensing", "speed controlled")),
         port(header="Outlet", help="Port label.", default=Default(_outlet, "its own label", listed=False)),
         port(header="Suction", help="Port label.", default=Default("Tank", "usual")),
         port(header="Drain to", help="Port label.", default=Default("Tank", "usual")),

@@ -7,7 +7,7 @@ from typing import Any
 
 import numpy as np
 
-from heataudit.machine import Cycle, Machine, Move, Ports
+from heataudit.machine import Cycle, Machine, Move, Ports, rows
 from heataudit.network.linear import Array
 from heataudit.network.topology import reached
 from heataudit.physics.actuators import cylinder_areas, double_rod_areas, plunger_areas
@@ -21,13 +21,13 @@ def highest_load_pressure(machine: Machine, ports: Ports, node: int) -> float:
     The actuators are those whose ports lines join to the node.
     """
     around: dict[int, set[int]] = defaultdict(set)
-    for line in machine.lines.itertuples(index=False):
+    for line in rows(machine.lines):
         start, end = ports.node(line.from_), ports.node(line.to)
         around[start].add(end)
         around[end].add(start)
     joined = reached(around, node)
     highest = 0.0
-    for actuator in machine.actuators.itertuples(index=False):
+    for actuator in rows(machine.actuators):
         side_a = ports.node(actuator.port_a) in joined
         side_b = bool(actuator.port_b) and ports.node(actuator.port_b) in joined
         for is_here, area, supports in zip((side_a, side_b), _areas(actuator), (1.0, -1.0), strict=True):

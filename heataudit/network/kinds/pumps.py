@@ -39,13 +39,9 @@ def slip(pump: Any, plant: Plant) -> Array:
     """Slip flow per pressure [m³/(s Pa)], shape (phases,)."""
     ratio = viscosity_ratio(plant.viscosity, pump.rated_viscosity, pump.viscosity_exponent)
     if np.isnan(pump.test_flow):
-        return slip_coefficient(
-            pump.displacement, pump.speed, pump.volumetric_efficiency, pump.rated_pressure, ratio
-        )
+        return slip_coefficient(pump.displacement, pump.speed, pump.volumetric_efficiency, pump.rated_pressure, ratio)
     tested = viscosity_ratio(pump.test_viscosity, pump.rated_viscosity, pump.viscosity_exponent)
-    at_test = slip_coefficient_from_test(
-        pump.displacement, pump.test_speed, pump.test_flow, pump.test_pressure, tested
-    )
+    at_test = slip_coefficient_from_test(pump.displacement, pump.test_speed, pump.test_flow, pump.test_pressure, tested)
     return at_test / ratio
 
 

@@ -7,6 +7,7 @@ from typing import Any
 
 import numpy as np
 
+from heataudit.machine import rows
 from heataudit.network.branches import Branch, Flags, MovePath
 from heataudit.network.elements import Integers
 from heataudit.network.kinds.actuators import Actuator
@@ -221,7 +222,9 @@ class Banks:
             if section.row.compensator == "flow sharing":
                 sharing.setdefault(section.row.bank.casefold(), []).append(section)
         for sections in sharing.values():
-            edges = [(s, number[(s.name, role)]) for s in sections for role in ("P-A", "P-B") if (s.name, role) in number]
+            edges = [
+                (s, number[(s.name, role)]) for s in sections for role in ("P-A", "P-B") if (s.name, role) in number
+            ]
             found.append(FlowSharing(tuple(sections), tuple(edges)))
         return found
 
@@ -235,8 +238,8 @@ def banks(plant: Plant, actuators: tuple[Actuator, ...]) -> Banks:
     table = plant.machine.sections
     sections: dict[str, Section] = {}
     galleries: list[Gallery] = []
-    for _, rows in table.groupby(table["bank"].str.casefold(), sort=False):
-        members = list(rows.itertuples(index=False))
+    for _, group in table.groupby(table["bank"].str.casefold(), sort=False):
+        members = rows(group)
         in_parts = any(row.feed != "parallel" for row in members)
         opened = [row for row in members if row.centre == "open"]
         behind = plant.node(members[0].port_p)
@@ -256,9 +259,9 @@ def banks(plant: Plant, actuators: tuple[Actuator, ...]) -> Banks:
     return Banks(tuple(sections[name] for name in table["name"]), tuple(galleries))
 
 
-def _gallery(rows: list[Any], sections: dict[str, Section], ends: tuple[int, int], role: str) -> Gallery:
-    coefficients = [float(throttle_coefficient(row.bypass, row.rated_drop)) for row in rows]
+def _gallery(parts: list[Any], sections: dict[str, Section], ends: tuple[int, int], role: str) -> Gallery:
+    coefficients = [float(throttle_coefficient(row.bypass, row.rated_drop)) for row in parts]
     return Gallery(
-        f"{rows[0].bank} gallery", role, tuple(sections[row.name] for row in rows), ends, np.array(coefficients),
-        np.array([row.bypass_closed_at for row in rows]),
+        f"{parts[0].bank} gallery", role, tuple(sections[row.name] for row in parts), ends, np.array(coefficients),
+        np.array([row.bypass_closed_at for row in parts]),
     )  # fmt: skip
