@@ -72,8 +72,8 @@ def driven(solution: Solution) -> Flags:
 def let_down_energy(machine: Machine, cycle: Cycle, solution: Solution) -> Array:
     """Heat [J] of letting down trapped oil at the end of each phase, once per repeat, shape (phases,).
 
-    A phase counts for an actuator that presses or works against a load and whose command changes in the next phase;
-    the first phase follows the last.
+    A phase counts for an actuator that presses or works against a load and whose inlet the next phase does not feed:
+    from extending to pressing the oil stays under pressure. The first phase follows the last.
 
     Parameters
     ----------
@@ -90,9 +90,10 @@ def let_down_energy(machine: Machine, cycle: Cycle, solution: Solution) -> Array
         moves = cycle.moves.get(name)
         if moves is None or not volumes[name] > 0:
             continue
-        commanded = (moves != Move.HOLD) & (moves != Move.FLOAT)
-        loaded = (moves == Move.PRESS) | (commanded & (np.nan_to_num(solution.actuators.load[k]) > 0))
-        ends = loaded & (moves != np.roll(moves, -1))
+        backward = np.isin(moves, [Move.RETRACT, Move.REVERSE])
+        fed = np.where(backward, 2, np.where((moves == Move.HOLD) | (moves == Move.FLOAT), 0, 1))
+        loaded = (moves == Move.PRESS) | ((fed > 0) & (np.nan_to_num(solution.actuators.load[k]) > 0))
+        ends = loaded & (fed != np.roll(fed, -1))
         inlet = np.nan_to_num(solution.actuators.inlet[k])
         energy += np.where(ends, decompression_energy(inlet, volumes[name], machine.oil["bulk_modulus"]), 0.0)
     return energy
