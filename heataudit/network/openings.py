@@ -38,8 +38,9 @@ class Openings:
         self.network = network
         plant = network.plant
         self.around = Surroundings(
-            plant.machine.oil["pressure_viscosity_coefficient"], network.paths, network.highest_setting
-        )
+            plant.machine.oil["pressure_viscosity_coefficient"], network.paths, network.highest_setting,
+            np.ones(network.branches.constant.shape),
+        )  # fmt: skip
         spools = [SpoolOpening(path, plant.phases) for path in network.paths]
         self.unknowns = [*network.unknowns, *spools]
         self.first_spool = len(network.unknowns)
@@ -167,6 +168,7 @@ class Openings:
             if free[number].any():
                 unknown.set(trial, np.where(free[number], place[self.first_spool + number], np.nan), rows)
         settled = settle(trial.placed(), self.around.take(rows))
+        self.around.thickened[:, rows] = settled.thickened
         settled.throttled.open_way[free] = False
         self.seen_open[:, rows] |= settled.throttled.open_way
         settled.throttled.share[free] = place[self.first_spool :][free]

@@ -28,10 +28,9 @@ class Folding:
     def _number_line_places(self) -> list[int]:
         """How many lines each slot holds at the most, as the element of every place."""
         most = [0] * len(self.topology.slots)
-        for pattern in self.topology.patterns:
-            for chain, slot in zip(pattern.chains, pattern.slots, strict=True):
-                lines = sum(self.branches.items[k].line is not None for k, _ in chain.items)
-                most[slot] = max(most[slot], lines)
+        for chain, slot, _ in self.topology.runs:
+            lines = sum(self.branches.items[k].line is not None for k, _ in chain.items)
+            most[slot] = max(most[slot], lines)
         return [slot for slot, count in enumerate(most) for _ in range(count)]
 
     def elements(self, viscosity_factor: Array) -> Elements:
@@ -53,27 +52,25 @@ class Folding:
                  (*LINE_FIELDS, "viscosity", "density", "flow_factor", "pressure_factor")}  # fmt: skip
         for name in ("length", "bends_k1", "bends_kinf", "minor_k"):
             lines[name][:] = 0.0
-        for pattern in self.topology.patterns:
-            rows = pattern.rows
-            for chain, slot in zip(pattern.chains, pattern.slots, strict=True):
-                active[slot, rows] = True
-                free = iter(np.flatnonzero(element == slot).tolist())
-                a = b = 1.0
-                for k, sign in chain.items:
-                    arrays["constant"][slot, rows] += b * sign * br.constant[k, rows]
-                    arrays["linear"][slot, rows] += b * a * br.linear[k, rows]
-                    arrays["quadratic"][slot, rows] += b * a * a * br.quadratic[k, rows]
-                    arrays["power"][slot, rows] += br.power[k, rows]
-                    low, high = br.low[k, rows] / a, br.high[k, rows] / a
-                    low, high = (low, high) if sign > 0 else (-high, -low)
-                    arrays["low"][slot, rows] = np.maximum(arrays["low"][slot, rows], low)
-                    arrays["high"][slot, rows] = np.minimum(arrays["high"][slot, rows], high)
-                    shape = br.items[k].line
-                    if shape is not None:
-                        self._fill_line(lines, next(free), rows, shape, viscosity_factor[k, rows], (a, b))
-                    a, b = a * br.ratio[k, rows], b * br.gain[k, rows]
-                arrays["ratio"][slot, rows] = a
-                arrays["gain"][slot, rows] = b
+        for chain, slot, rows in self.topology.runs:
+            active[slot, rows] = True
+            free = iter(np.flatnonzero(element == slot).tolist())
+            a = b = 1.0
+            for k, sign in chain.items:
+                arrays["constant"][slot, rows] += b * sign * br.constant[k, rows]
+                arrays["linear"][slot, rows] += b * a * br.linear[k, rows]
+                arrays["quadratic"][slot, rows] += b * a * a * br.quadratic[k, rows]
+                arrays["power"][slot, rows] += br.power[k, rows]
+                low, high = br.low[k, rows] / a, br.high[k, rows] / a
+                low, high = (low, high) if sign > 0 else (-high, -low)
+                arrays["low"][slot, rows] = np.maximum(arrays["low"][slot, rows], low)
+                arrays["high"][slot, rows] = np.minimum(arrays["high"][slot, rows], high)
+                shape = br.items[k].line
+                if shape is not None:
+                    self._fill_line(lines, next(free), rows, shape, viscosity_factor[k, rows], (a, b))
+                a, b = a * br.ratio[k, rows], b * br.gain[k, rows]
+            arrays["ratio"][slot, rows] = a
+            arrays["gain"][slot, rows] = b
         scale = br.flow_scale
         return Elements(
             node_count=len(self.topology.kept),
@@ -95,13 +92,11 @@ class Folding:
     def thicken(self, elements: Elements, viscosity_factor: Array) -> Elements:
         """The same reduced network with other viscosity factors [-], shape (branches, phases)."""
         viscosity = elements.lines.viscosity.copy()
-        for pattern in self.topology.patterns:
-            for chain, slot in zip(pattern.chains, pattern.slots, strict=True):
-                free = iter(np.flatnonzero(elements.lines.element == slot).tolist())
-                for k, _ in chain.items:
-                    if self.branches.items[k].line is not None:
-                        rows = pattern.rows
-                        viscosity[next(free), rows] = self.branches.viscosity[rows] * viscosity_factor[k, rows]
+        for chain, slot, rows in self.topology.runs:
+            free = iter(np.flatnonzero(elements.lines.element == slot).tolist())
+            for k, _ in chain.items:
+                if self.branches.items[k].line is not None:
+                    viscosity[next(free), rows] = self.branches.viscosity[rows] * viscosity_factor[k, rows]
         changed = replace(elements, lines=replace(elements.lines, viscosity=viscosity))
         changed.__dict__["solver"] = elements.solver
         return changed

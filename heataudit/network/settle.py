@@ -31,15 +31,19 @@ OPENS = 1.0
 
 @dataclass(frozen=True)
 class Surroundings:
-    """What else a batch needs: the pressure-viscosity coefficient [1/Pa], the moves, the highest setting [Pa]."""
+    """What else a batch needs: the pressure-viscosity coefficient [1/Pa], the moves, the highest setting [Pa].
+
+    `thickened` [-] is the factor of the pressure on the viscosity in each branch to start from, (branches, phases).
+    """
 
     pressure_viscosity: float
     paths: tuple[MovePath, ...]
     highest_setting: Array
+    thickened: Array
 
     def take(self, rows: Integers) -> Surroundings:
         """The same for some of the phases."""
-        return replace(self, highest_setting=self.highest_setting[rows])
+        return replace(self, highest_setting=self.highest_setting[rows], thickened=self.thickened[:, rows])
 
 
 @dataclass(frozen=True)
@@ -48,6 +52,7 @@ class Settled:
 
     state: Spread
     throttled: Throttled
+    thickened: Array
     iterations: Integers
     residual: Array
     converged: Flags
@@ -58,7 +63,7 @@ class Settled:
         return Settled(
             Spread(state.flow[:, rows], state.drop[:, rows], state.pressure[:, rows]),
             Throttled(throttled.share[:, rows], throttled.open_way[:, rows]),
-            self.iterations[rows], self.residual[rows], self.converged[rows],
+            self.thickened[:, rows], self.iterations[rows], self.residual[rows], self.converged[rows],
         )  # fmt: skip
 
     def put(self, rows: Integers, other: Settled) -> None:
@@ -66,7 +71,7 @@ class Settled:
         for mine, its in (
             (self.state.flow, other.state.flow), (self.state.drop, other.state.drop),
             (self.state.pressure, other.state.pressure), (self.throttled.share, other.throttled.share),
-            (self.throttled.open_way, other.throttled.open_way),
+            (self.throttled.open_way, other.throttled.open_way), (self.thickened, other.thickened),
         ):  # fmt: skip
             mine[:, rows] = its
         self.iterations[rows] += other.iterations
@@ -115,7 +120,7 @@ def _settle_open(branches: Branches, around: Surroundings) -> Settled:
     """Solve a batch with the branches that are open; viscosity under pressure by iteration on the lines' pressures."""
     topology = analyse(branches)
     folding = Folding(branches, topology)
-    factor = np.ones(branches.constant.shape)
+    factor = around.thickened
     elements = folding.elements(factor)
     start = _start(branches, topology, around.highest_setting)
     point = solve_reduced(elements, start)
@@ -135,7 +140,7 @@ def _settle_open(branches: Branches, around: Surroundings) -> Settled:
         if failed.size:
             point.put(failed, solve_reduced(elements.take(failed), start[:, failed]))
         iterations += point.iterations
-    return Settled(state, throttled, iterations, point.residual, steady & (point.residual < SOLVED))
+    return Settled(state, throttled, factor.copy(), iterations, point.residual, steady & (point.residual < SOLVED))
 
 
 def _viscosity_factor(branches: Branches, state: Spread, coefficient: float) -> Array:

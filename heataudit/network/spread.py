@@ -52,14 +52,13 @@ def spread(branches: Branches, topology: Topology, point: Point, viscosity_facto
     state = Spread(np.zeros(shape), np.zeros(shape), np.full((branches.node_count, shape[1]), np.nan))
     state.pressure[0] = 0.0
     number = {node: k for k, node in enumerate(topology.kept)}
+    for chain, _, rows in topology.runs:
+        for node in chain.ends:
+            if node:
+                state.pressure[node, rows] = point.pressure[number[node], rows] * PRESSURE_SCALE
+    for chain, slot, rows in topology.runs:
+        _walk(branches, chain, rows, _ChainPoint(point, slot, rows, branches.flow_scale), state, viscosity_factor)
     for pattern in topology.patterns:
-        rows = pattern.rows
-        for chain in pattern.chains:
-            for node in chain.ends:
-                if node:
-                    state.pressure[node, rows] = point.pressure[number[node], rows] * PRESSURE_SCALE
-        for chain, slot in zip(pattern.chains, pattern.slots, strict=True):
-            _walk(branches, chain, rows, _ChainPoint(point, slot, rows, branches.flow_scale), state, viscosity_factor)
         _dead_ends(branches, pattern, state)
     return state
 

@@ -47,16 +47,26 @@ class Pattern:
     slots: tuple[int, ...]
 
 
+class Run(NamedTuple):
+    """A chain in its slot, and all the phases in which it stands there."""
+
+    chain: Chain
+    slot: int
+    rows: Rows
+
+
 @dataclass(frozen=True)
 class Topology:
     """Patterns of a batch and the reduced network that they share.
 
     `kept` are the raw nodes that the reduced network keeps, in the order of its nodes (the tank is not among them).
+    `runs` are the chains of all patterns, the same chain once.
     """
 
     patterns: tuple[Pattern, ...]
     kept: tuple[int, ...]
     slots: tuple[Ends, ...]
+    runs: tuple[Run, ...]
 
 
 def analyse(branches: Branches) -> Topology:
@@ -76,7 +86,16 @@ def analyse(branches: Branches) -> Topology:
     for living, rows in zip(alive, groups, strict=True):
         chains = _chains(branches, living, kept)
         patterns.append(Pattern(rows, chains, slots.assign(chains)))
-    return Topology(tuple(patterns), tuple(sorted(kept - {0})), tuple(slots.ends))
+    return Topology(tuple(patterns), tuple(sorted(kept - {0})), tuple(slots.ends), _runs(patterns))
+
+
+def _runs(patterns: list[Pattern]) -> tuple[Run, ...]:
+    """Chains of all patterns with all their phases."""
+    where: dict[tuple[Chain, int], list[Rows]] = defaultdict(list)
+    for pattern in patterns:
+        for place in zip(pattern.chains, pattern.slots, strict=True):
+            where[place].append(pattern.rows)
+    return tuple(Run(chain, slot, np.concatenate(rows)) for (chain, slot), rows in where.items())
 
 
 class _Slots:
