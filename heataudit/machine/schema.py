@@ -134,6 +134,8 @@ class Column:
     @property
     def is_bounded(self) -> bool:
         """Whether there is anything that `accepts` would refuse."""
+        if self.holds == "reference":
+            return False
         bounds = (self.above, self.at_least, self.at_most)
         return bool(self.words or self.whole or self.among) or any(bound is not None for bound in bounds)
 

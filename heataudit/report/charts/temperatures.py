@@ -1,0 +1,66 @@
+"""What the two charts over temperature and time share: a plot with the names of its curves at the right."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from typing import TYPE_CHECKING, NamedTuple
+
+import numpy as np
+from numpy.typing import NDArray
+
+from heataudit.report.charts.palette import INK
+from heataudit.report.charts.style import SMALL, WIDTH, axes_between, spread, text_size, wrap
+
+if TYPE_CHECKING:
+    from matplotlib.axes import Axes
+    from matplotlib.figure import Figure
+
+LEFT, RIGHT, BOTTOM = 0.75, 1.75, 0.55
+
+
+class Curve(NamedTuple):
+    """A curve with its name, colour and line style."""
+
+    name: str
+    x: NDArray[np.float64]
+    y: NDArray[np.float64]
+    colour: str
+    style: object = "-"
+
+
+def plot(figure: Figure, top: float, curves: Sequence[Curve], limits: tuple[float, float, float, float]) -> Axes:
+    """Axes with curves, named at their right ends; limits are left, right, low, high."""
+    axes = axes_between(figure, LEFT, WIDTH - RIGHT, BOTTOM, top)
+    height = top - BOTTOM
+    axes.set(xlim=limits[:2], ylim=limits[2:])
+    ends, written = [], []
+    for curve in curves:
+        axes.plot(curve.x, curve.y, color=curve.colour, linestyle=curve.style, linewidth=2.0)
+        end = float(np.interp(limits[1], curve.x, curve.y))
+        ends.append((min(max(end, limits[2]), limits[3]) - limits[2]) / (limits[3] - limits[2]) * height)
+        written.append(wrap(curve.name, RIGHT - 0.2, SMALL, lines=3))
+    sizes = [text_size(text, SMALL)[1] + 0.05 for text in written]
+    for curve, text, y in zip(curves, written, spread(ends, sizes, 0.0, height), strict=True):
+        axes.text(
+            1 + 0.08 / (WIDTH - LEFT - RIGHT), y / height, text, transform=axes.transAxes, fontsize=SMALL, va="center",
+            color=curve.colour, linespacing=1.15,
+        )  # fmt: skip
+    return axes
+
+
+def limit_line(axes: Axes, value: float, text: str, vertical: bool) -> None:
+    """A dashed line at a limit, with its name along it."""
+    line = axes.axvline if vertical else axes.axhline
+    line(value, color=INK, linestyle=(0, (5, 3)), linewidth=1.0)
+    if vertical:
+        low, high = axes.get_xlim()
+        left = value > low + 0.6 * (high - low)
+        axes.annotate(
+            text, (value, 1), xycoords=("data", "axes fraction"), xytext=(-4 if left else 4, -2),
+            textcoords="offset points", ha="right" if left else "left", va="top", fontsize=SMALL,
+        )  # fmt: skip
+    else:
+        axes.annotate(
+            text, (1, value), xycoords=("axes fraction", "data"), xytext=(-2, 3), textcoords="offset points",
+            ha="right", va="bottom", fontsize=SMALL,
+        )  # fmt: skip
