@@ -14,6 +14,9 @@ from numpy.typing import NDArray
 
 Array = NDArray[np.float64]
 
+LEAST_PIVOT = 1e-14
+"""Pivot [-] at the least, as a share of the diagonal before elimination: about what rounding leaves of it."""
+
 
 class BatchedLU:
     """LU factorisation of one sparsity pattern over a batch of matrices (Doolittle, minimum degree order).
@@ -61,9 +64,14 @@ class BatchedLU:
         return len(self.slot)
 
     def factorise(self, values: Array) -> None:
-        """Turn values [any], shape (entry_count, batch), into the factors, in place."""
+        """Turn values [any], shape (entry_count, batch), into the factors, in place.
+
+        A pivot that cancels to nothing, that of oil which hangs together and is shut off from the rest, is held at
+        `LEAST_PIVOT` of what it was.
+        """
+        least = {pivot: LEAST_PIVOT * values[pivot] for pivot, _ in self._plan}
         for pivot, steps in self._plan:
-            inverse = 1.0 / values[pivot]
+            inverse = 1.0 / np.maximum(values[pivot], least[pivot])
             values[pivot] = inverse
             for factor, updates in steps:
                 values[factor] *= inverse

@@ -41,8 +41,8 @@ def print_summary(audit: Audit, system: System, file: IO[str] | None = None) -> 
         console.print(Text(line))
     console.print()
     console.print(_losses(audit, system))
-    console.print(Text(f"Oil     {oil_sentence(audit, system)}"))
-    console.print(Text(f"Cooler  {restate(audit.cooler.verdict, system, cooler_names(audit))}"))
+    console.print(Text(f"Oil:    {oil_sentence(audit, system)}"))
+    console.print(Text(f"Cooler: {restate(audit.cooler.verdict, system, cooler_names(audit))}"))
     findings = findings_in_order(audit)
     if findings:
         console.print()

@@ -88,7 +88,7 @@ def oil_sentence(audit: Audit, system: System) -> str:
     ambient = quantity(conditions.ambient_temperature_C, "°C", system)
     limit = quantity(thermal.highest_temperature_C, "°C", system)
     if thermal.equilibrium_C is None:
-        return f"It finds no balance at {ambient} ambient: it grows hotter for as long as the machine works."
+        return f"The oil finds no balance at {ambient} ambient: it grows hotter for as long as the machine works."
     settled = quantity(thermal.equilibrium_C, "°C", system)
     side = "above" if thermal.equilibrium_C > thermal.highest_temperature_C else "within"
-    return f"It settles at {settled} at {ambient} ambient, {side} the {limit} that it may have."
+    return f"The oil settles at {settled} at {ambient} ambient, {side} the {limit} that it may have."

@@ -9,14 +9,14 @@ import numpy as np
 from heataudit.audit.figures import L_MIN
 from heataudit.audit.model import Audit
 from heataudit.report.charts.palette import COOLER, INK, QUIET, WITHIN
-from heataudit.report.charts.style import NORMAL, SMALL, add_title, new_figure, nice_top
+from heataudit.report.charts.style import nice_top, titled_figure
 from heataudit.report.charts.temperatures import Curve, limit_line, plot
 from heataudit.report.quantities import System, convert, quantity
 
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
-HEIGHT = 3.6
+BODY = 3.0
 MOST = 12
 """Coolers that are drawn: the first of the ranking."""
 
@@ -44,10 +44,7 @@ def draw(audit: Audit, system: System) -> Figure | None:
         chosen = name == cooler.choice
         label = f"{name} (choice)" if chosen else name
         curves.append(Curve(label, flow, capacity, COOLER if chosen else QUIET, "-" if chosen else (0, (3, 1.5))))
-    figure = new_figure(HEIGHT if len(names) <= 8 else HEIGHT + 0.25 * (len(names) - 8))
-    shown = "As listed, before air density, altitude and water flow are allowed for."
-    more = f" The first {MOST} of {len(cooler.options)}." if len(cooler.options) > MOST else ""
-    top = add_title(figure, _title(audit, needed, system), shown + more)
+    figure, top = titled_figure(_title(audit, needed, system), _remark(audit), BODY)
     limit, unit = convert(needed, "kW/K", system)
     high = nice_top(1.1 * max([float(limit)] + [float(c.y.max()) for c in curves]))
     right = 1.08 * max(float(c.x.max()) for c in curves)
@@ -60,10 +57,18 @@ def draw(audit: Audit, system: System) -> Figure | None:
         axes.plot(
             float(convert(cooler.oil_flow_L_min, "L/min", system)[0]), float(limit), "D", color=INK, markersize=6
         )
-    axes.set_xlabel(f"Oil flow [{convert(0.0, 'L/min', system)[1]}]", fontsize=NORMAL)
-    axes.set_ylabel(f"Capacity [{unit}]", fontsize=NORMAL)
-    axes.tick_params(labelsize=SMALL)
+    axes.set_xlabel(f"Oil flow [{convert(0.0, 'L/min', system)[1]}]")
+    axes.set_ylabel(f"Capacity [{unit}]")
     return figure
+
+
+def _remark(audit: Audit) -> str:
+    parts = ["As listed, before air density, altitude and water flow are allowed for."]
+    if audit.cooler.oil_flow_L_min is not None:
+        parts.append("The diamond is the case for which the cooler is sized.")
+    if len(audit.cooler.options) > MOST:
+        parts.append(f"The first {MOST} of {len(audit.cooler.options)}.")
+    return " ".join(parts)
 
 
 def _title(audit: Audit, needed: float, system: System) -> str:

@@ -11,15 +11,13 @@ from heataudit.audit.figures import BAR, L_MIN
 from heataudit.audit.model import Audit
 from heataudit.report.charts.palette import BAND, GROUP_COLOURS, HEAT, INK, PUMP_STYLES, QUIET
 from heataudit.report.charts.style import (
-    MARGIN,
     SMALL,
     WIDTH,
-    add_title,
     axes_between,
-    new_figure,
     nice_top,
     spread,
     text_size,
+    titled_figure,
     wrap,
 )
 from heataudit.report.quantities import System, convert, quantity
@@ -30,7 +28,7 @@ if TYPE_CHECKING:
 
 Floats = NDArray[np.float64]
 
-PANEL, PANEL_GAP = 1.35, 0.14
+PANEL, PANEL_GAP, BOTTOM = 1.35, 0.14, 0.55
 NAME_LENGTH = 1.35
 """Longest a phase's name may be when it stands upright [in]."""
 
@@ -66,20 +64,18 @@ def draw(audit: Audit, system: System) -> Figure:
     names, upright = phase_names(audit, edges, plot_width)
     heights = [text_size(n)[0] if upright else text_size(n, SMALL)[1] for n in names.values()]
     strip = max(heights, default=0.0) + 0.1
-    figure = new_figure(3 * PANEL + 2 * PANEL_GAP + strip + 1.35)
-    top = add_title(figure, _title(audit, system), _remark(audit, names)) - strip
-    axes = None
-    for title, curves in panels(audit, system):
-        axes = axes_between(figure, LEFT, WIDTH - RIGHT_NAMES, top - PANEL, top)
+    body = strip + 3 * PANEL + 2 * PANEL_GAP + BOTTOM
+    figure, top = titled_figure(_title(audit, system), _remark(audit, names), body)
+    for number, (title, curves) in enumerate(panels(audit, system)):
+        upper = top - strip - number * (PANEL + PANEL_GAP)
+        axes = axes_between(figure, LEFT, WIDTH - RIGHT_NAMES, upper - PANEL, upper)
         _draw_panel(axes, edges, curves)
         axes.set_ylabel(title)
-        if top > figure.get_size_inches()[1] - strip - 1.2:
+        axes.tick_params(labelbottom=number == 2)
+        if number == 0:
             _name_phases(axes, edges, names, upright)
-        axes.set_xticklabels([])
-        top -= PANEL + PANEL_GAP
-    assert axes is not None
-    axes.xaxis.set_major_formatter("{x:g}")
-    axes.set_xlabel(f"Time [{unit}]")
+        if number == 2:
+            axes.set_xlabel(f"Time [{unit}]")
     return figure
 
 

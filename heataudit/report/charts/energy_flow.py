@@ -10,12 +10,11 @@ from heataudit.report.charts.style import (
     MARGIN,
     SMALL,
     WIDTH,
-    add_title,
     drawing,
-    new_figure,
-    say_nothing_to_show,
+    nothing_to_show,
     spread,
     text_size,
+    titled_figure,
 )
 from heataudit.report.quantities import System, quantity
 from heataudit.report.words import GROUP_NAMES, ranked_groups, share_text
@@ -25,7 +24,7 @@ if TYPE_CHECKING:
     from matplotlib.figure import Figure
     from matplotlib.patches import PathPatch
 
-HEIGHT = 3.9
+BODY = 3.2
 LABEL = 0.21
 """Height that the label of a stream needs [in]."""
 
@@ -34,7 +33,7 @@ BLOCK = 0.13
 LIFTING = "#AFC7B8"
 """Colour of work that lifts oil: pale useful work."""
 
-NEGLIGIBLE = 1e-3
+NEGLIGIBLE = 0.01
 """Share below which lifted oil and what loads give back are not drawn."""
 
 
@@ -56,12 +55,11 @@ def draw(audit: Audit, system: System) -> Figure:
     system
         "SI" or "US".
     """
-    figure = new_figure(HEIGHT)
     coming, going = streams(audit)
-    top = add_title(figure, _title(audit), "Energy of one duty cycle; widths are in proportion.")
-    total = max(sum(s.energy for s in coming), sum(s.energy for s in going))
-    if total <= 0 or not coming or not going:
-        return say_nothing_to_show(figure, "No energy comes in or goes out in this cycle.")
+    total = sum(s.energy for s in coming)
+    if not coming or not going:
+        return nothing_to_show(_title(audit), "No energy comes in or goes out in this cycle.")
+    figure, top = titled_figure(_title(audit), "Energy of one duty cycle; widths are in proportion.", BODY)
     axes = drawing(figure)
     left = MARGIN + max(text_size(s.name, bold=True)[0] for s in coming) + 0.12
     right = WIDTH - MARGIN - max(text_size(_label(s, total, system))[0] for s in going) - 0.85

@@ -9,7 +9,7 @@ from scipy.interpolate import PchipInterpolator
 
 from heataudit.audit.model import Audit
 from heataudit.report.charts.palette import COOLER, HEAT, INK, TANK
-from heataudit.report.charts.style import NORMAL, add_title, new_figure, nice_top
+from heataudit.report.charts.style import NORMAL, nice_top, titled_figure
 from heataudit.report.charts.temperatures import Curve, limit_line, plot
 from heataudit.report.quantities import System, convert, quantity
 from heataudit.report.words import oil_sentence
@@ -18,7 +18,7 @@ if TYPE_CHECKING:
     from matplotlib.axes import Axes
     from matplotlib.figure import Figure
 
-HEIGHT = 3.7
+BODY = 3.0
 
 
 def draw(audit: Audit, system: System) -> Figure:
@@ -51,9 +51,10 @@ def draw(audit: Audit, system: System) -> Figure:
     curves.append(Curve("Given off by the tank", *shown(fine, tank), TANK, (0, (6, 2))))  # type: ignore[arg-type]
     if cooled:
         curves.append(Curve("Tank and existing cooler", *shown(fine, both), COOLER))  # type: ignore[arg-type]
-    figure = new_figure(HEIGHT)
     ambient = quantity(audit.conditions.ambient_temperature_C, "°C", system)
-    top = add_title(figure, oil_sentence(audit, system), f"Means over the duty cycle at {ambient} ambient.")
+    figure, top = titled_figure(
+        oil_sentence(audit, system), f"Means over the duty cycle at {ambient} ambient.", BODY
+    )
     high = nice_top(1.1 * max(float(curves[0].y.max()), 0.0))
     low = min(0.0, float(curves[0].y.min()))
     axes = plot(figure, top, curves, (float(curves[0].x[0]), float(curves[0].x[-1]), low, high))

@@ -13,11 +13,10 @@ from heataudit.report.charts.style import (
     MARGIN,
     SMALL,
     WIDTH,
-    add_title,
     axes_between,
-    new_figure,
-    say_nothing_to_show,
+    nothing_to_show,
     text_size,
+    titled_figure,
     wrap,
 )
 from heataudit.report.quantities import System, convert, grouped
@@ -28,7 +27,7 @@ if TYPE_CHECKING:
 MOST = 30
 """Lines that are drawn: those that come nearest to their guideline or are furthest above it."""
 
-ROW = 0.27
+ROW, BOTTOM = 0.27, 0.52
 NAME_WIDTH = 2.3
 
 
@@ -44,17 +43,14 @@ def draw(audit: Audit, system: System) -> Figure:
     """
     table = audit.lines
     if not len(table):
-        figure = new_figure(1.6)
-        add_title(figure, "Velocities in the lines")
-        return say_nothing_to_show(figure, "The workbook has no lines.")
+        return nothing_to_show("Velocities in the lines", "The workbook has no lines.")
     over = table["velocity_m_s"].abs() / table["guideline_m_s"]
     shown = table.loc[over.sort_values(ascending=False, kind="stable").index[:MOST]]
     _, unit = convert(0.0, "m/s", system)
     speed, guide = (convert(shown[key].abs().to_numpy(float), "m/s", system)[0] for key in (
         "velocity_m_s", "guideline_m_s"
     ))  # fmt: skip
-    figure = new_figure(1.45 + ROW * len(shown))
-    top = add_title(figure, _title(over), _remark(table, shown))
+    figure, top = titled_figure(_title(over), _remark(table, shown), BOTTOM + ROW * len(shown))
     names = [wrap(f"{row['line']}, {row['size'] or row['service']}", NAME_WIDTH, lines=1)
              for row in shown.to_dict("records")]  # fmt: skip
     labels = [_label(s, g, row, unit) for s, g, row in zip(speed, guide, shown.to_dict("records"), strict=True)]
@@ -63,7 +59,7 @@ def draw(audit: Audit, system: System) -> Figure:
     farthest = np.maximum(speed, guide)
     widths = np.array([text_size(label, SMALL)[0] for label in labels])
     scale = float(np.min((room - widths - 0.15) / farthest))
-    axes = axes_between(figure, left, WIDTH - MARGIN, 0.52, top)
+    axes = axes_between(figure, left, WIDTH - MARGIN, BOTTOM, top)
     axes.set(xlim=(0, room / scale), ylim=(len(shown) - 0.4, -0.6), yticks=range(len(shown)), yticklabels=names)
     axes.tick_params(axis="y", length=0, labelsize="medium")
     colours = [BEYOND if fast else WITHIN for fast in speed > guide]

@@ -11,11 +11,10 @@ from heataudit.report.charts.palette import GROUP_COLOURS, INK
 from heataudit.report.charts.style import (
     MARGIN,
     WIDTH,
-    add_title,
     axes_between,
-    new_figure,
-    say_nothing_to_show,
+    nothing_to_show,
     text_size,
+    titled_figure,
     wrap,
 )
 from heataudit.report.quantities import System, quantity
@@ -44,12 +43,10 @@ def draw(audit: Audit, system: System) -> Figure:
     table, rest = ranked(audit.losses)
     total = audit.cycle.heat_energy_kJ
     if not len(table) or total <= 0:
-        figure = new_figure(1.6)
-        add_title(figure, "Losses by component")
-        return say_nothing_to_show(figure, "Nothing makes heat in this cycle.")
+        return nothing_to_show("Losses by component", "Nothing makes heat in this cycle.")
     rows = len(table) + (rest.size > 0)
-    figure = new_figure(1.0 + ROW * rows)
-    top = add_title(figure, _title(table, total), "Heat in one duty cycle, its share, and the kind of loss.")
+    remark = "Heat in one duty cycle, its share, and the kind of loss."
+    figure, top = titled_figure(_title(table, total), remark, MARGIN + ROW * rows)
     names = [wrap(str(name), NAME_WIDTH, lines=1) for name in table.index]
     ends = table.sum(axis=1).tolist()
     labels = [_label(table.loc[name], total, system) for name in table.index]

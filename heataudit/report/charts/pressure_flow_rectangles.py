@@ -13,13 +13,12 @@ from heataudit.report.charts.style import (
     MARGIN,
     SMALL,
     WIDTH,
-    add_title,
     axes_between,
     drawing,
-    new_figure,
     nice_top,
-    say_nothing_to_show,
+    nothing_to_show,
     text_size,
+    titled_figure,
     wrap,
 )
 from heataudit.report.quantities import System, convert, quantity
@@ -49,16 +48,13 @@ def draw(audit: Audit, system: System) -> Figure:
     """
     numbers = drawn_phases(audit)
     if not numbers:
-        figure = new_figure(1.6)
-        add_title(figure, "Pump pressure times pump flow")
-        return say_nothing_to_show(figure, "The pumps deliver no power in this cycle.")
+        return nothing_to_show("Pump pressure times pump flow", "The pumps deliver no power in this cycle.")
     columns = min(len(numbers), 3)
     rows = -(-len(numbers) // columns)
     used = [part for part in GROUP_COLOURS if (audit.rectangles["part"] == part).any()]
     key = _key_rows(used)
-    head = 1.0
-    figure = new_figure(head + rows * (PANEL + PANEL_GAP) + len(key) * KEY_ROW + 0.1)
-    top = add_title(figure, _title(audit, numbers), _remark(audit, numbers))
+    body = rows * (PANEL + PANEL_GAP) + len(key) * KEY_ROW + MARGIN
+    figure, top = titled_figure(_title(audit, numbers), _remark(audit, numbers), body)
     width = (WIDTH - MARGIN) / columns
     for k, number in enumerate(numbers):
         row, column = divmod(k, columns)

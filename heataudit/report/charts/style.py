@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import re
 import warnings
 from collections.abc import Iterator, Sequence
 from contextlib import contextmanager
@@ -47,11 +48,37 @@ def chart_style() -> Iterator[None]:
         yield
 
 
-def new_figure(height: float, width: float = WIDTH) -> Figure:
-    """An empty figure [in]."""
+def titled_figure(title: str, remark: str, body: float) -> tuple[Figure, float]:
+    """A figure that says at its top what it shows, in up to three lines, and a remark below.
+
+    Parameters
+    ----------
+    title
+        The finding, in a sentence.
+    remark
+        How to read the drawing; "" for none.
+    body
+        Height of the drawing below [in].
+
+    Returns
+    -------
+    The figure, and the distance [in] from its bottom to the top of the body.
+    """
     from matplotlib.figure import Figure
 
-    return Figure(figsize=(width, height), facecolor="white")
+    parts = [(wrap(text, WIDTH - 2 * MARGIN, size, bold, lines=3), size, bold, colour) for text, size, bold, colour in (
+        (title, TITLE, True, INK), (remark, SMALL, False, QUIET)
+    ) if text]  # fmt: skip
+    height = body + MARGIN + 0.05 + sum(text_size(text, size, bold)[1] + 0.05 for text, size, bold, _ in parts)
+    figure = Figure(figsize=(WIDTH, height), facecolor="white")
+    top = height - MARGIN
+    for text, size, bold, colour in parts:
+        figure.text(
+            MARGIN / WIDTH, top / height, text, fontsize=size, fontweight="bold" if bold else "normal", color=colour,
+            va="top", ha="left", linespacing=1.25,
+        )  # fmt: skip
+        top -= text_size(text, size, bold)[1] + 0.05
+    return figure, body
 
 
 def axes_between(figure: Figure, left: float, right: float, bottom: float, top: float) -> Axes:
@@ -84,7 +111,8 @@ def text_size(text: str, size: float = NORMAL, bold: bool = False) -> tuple[floa
 
 def wrap(text: str, width: float, size: float = NORMAL, bold: bool = False, lines: int = 2) -> str:
     """A text in lines no wider than a width [in]; what goes beyond the last line gives way to an ellipsis."""
-    words, found = printable(text).split(" "), [""]
+    unbroken = re.sub(r"(?<=[\d–]) (?=[%°a-zA-Z])", "\N{NO-BREAK SPACE}", printable(text))
+    words, found = unbroken.split(" "), [""]
     for word in words:
         longer = f"{found[-1]} {word}".strip()
         if text_size(longer, size, bold)[0] <= width or not found[-1]:
@@ -103,27 +131,6 @@ def _cut(line: str, width: float, size: float, bold: bool) -> str:
     while kept > 1 and text_size(line[:kept].rstrip() + "…", size, bold)[0] > width:
         kept -= 1
     return line[:kept].rstrip() + "…"
-
-
-def add_title(figure: Figure, text: str, remark: str = "") -> float:
-    """Write what the chart shows at its top, in up to three lines, and a remark below.
-
-    Returns
-    -------
-    Distance [in] from the figure's bottom to what is left below.
-    """
-    width, height = figure.get_size_inches()
-    room = width - 2 * MARGIN
-    top = height - MARGIN
-    for part, size, bold, colour in ((text, TITLE, True, INK), (remark, SMALL, False, QUIET)):
-        if part:
-            written = wrap(part, room, size, bold, lines=3)
-            figure.text(
-                MARGIN / width, top / height, written, fontsize=size, fontweight="bold" if bold else "normal",
-                color=colour, va="top", ha="left", linespacing=1.25,
-            )  # fmt: skip
-            top -= text_size(written, size, bold)[1] + 0.05
-    return top - 0.05
 
 
 def spread(wanted: Sequence[float], sizes: Sequence[float], low: float, high: float) -> list[float]:
@@ -167,8 +174,9 @@ def nice_top(value: float) -> float:
     return value * 1.06 if math.isfinite(value) and value > 0 else 1.0
 
 
-def say_nothing_to_show(figure: Figure, text: str) -> Figure:
+def nothing_to_show(title: str, text: str) -> Figure:
     """A sentence in place of a drawing."""
+    figure, _ = titled_figure(title, "", 1.0)
     figure.text(0.5, 0.45, text, ha="center", va="center", color=QUIET)
     return figure
 

@@ -9,13 +9,13 @@ import numpy as np
 from numpy.typing import NDArray
 
 from heataudit.report.charts.palette import INK
-from heataudit.report.charts.style import SMALL, WIDTH, axes_between, spread, text_size, wrap
+from heataudit.report.charts.style import MARGIN, SMALL, WIDTH, axes_between, spread, text_size, wrap
 
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
     from matplotlib.figure import Figure
 
-LEFT, RIGHT, BOTTOM = 0.75, 1.75, 0.55
+LEFT, NAMES, BOTTOM = 0.75, 1.6, 0.55
 
 
 class Curve(NamedTuple):
@@ -30,19 +30,20 @@ class Curve(NamedTuple):
 
 def plot(figure: Figure, top: float, curves: Sequence[Curve], limits: tuple[float, float, float, float]) -> Axes:
     """Axes with curves, named at their right ends; limits are left, right, low, high."""
-    axes = axes_between(figure, LEFT, WIDTH - RIGHT, BOTTOM, top)
+    written = [wrap(curve.name, NAMES, SMALL, lines=3) for curve in curves]
+    width = WIDTH - LEFT - MARGIN - 0.1 - max(text_size(text, SMALL)[0] for text in written)
+    axes = axes_between(figure, LEFT, LEFT + width, BOTTOM, top)
     height = top - BOTTOM
     axes.set(xlim=limits[:2], ylim=limits[2:])
-    ends, written = [], []
+    ends = []
     for curve in curves:
         axes.plot(curve.x, curve.y, color=curve.colour, linestyle=curve.style, linewidth=2.0)
         end = float(np.interp(limits[1], curve.x, curve.y))
         ends.append((min(max(end, limits[2]), limits[3]) - limits[2]) / (limits[3] - limits[2]) * height)
-        written.append(wrap(curve.name, RIGHT - 0.2, SMALL, lines=3))
     sizes = [text_size(text, SMALL)[1] + 0.05 for text in written]
     for curve, text, y in zip(curves, written, spread(ends, sizes, 0.0, height), strict=True):
         axes.text(
-            1 + 0.08 / (WIDTH - LEFT - RIGHT), y / height, text, transform=axes.transAxes, fontsize=SMALL, va="center",
+            1 + 0.08 / width, y / height, text, transform=axes.transAxes, fontsize=SMALL, va="center",
             color=curve.colour, linespacing=1.15,
         )  # fmt: skip
     return axes

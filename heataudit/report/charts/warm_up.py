@@ -8,14 +8,14 @@ import numpy as np
 
 from heataudit.audit.model import Audit
 from heataudit.report.charts.palette import COOLER, HEAT
-from heataudit.report.charts.style import add_title, new_figure
+from heataudit.report.charts.style import titled_figure
 from heataudit.report.charts.temperatures import Curve, limit_line, plot
 from heataudit.report.quantities import System, convert, quantity
 
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
-HEIGHT = 3.4
+BODY = 2.8
 
 
 def draw(audit: Audit, system: System) -> Figure:
@@ -41,8 +41,8 @@ def draw(audit: Audit, system: System) -> Figure:
         for name, key, colour, style in wanted
     ]
     limit = float(convert(thermal.highest_temperature_C, "°C", system)[0])
-    figure = new_figure(HEIGHT)
-    top = add_title(figure, _title(audit, cooled, system), "Means over each duty cycle, repeated without a break.")
+    remark = "Means over each duty cycle, repeated without a break."
+    figure, top = titled_figure(_title(audit, cooled, system), remark, BODY)
     values = np.concatenate([curve.y for curve in curves] + [[limit]])
     low, high = float(values.min()), float(values.max())
     margin = 0.08 * max(high - low, 1.0)
