@@ -20,7 +20,7 @@ from heataudit.network.unknowns import Look, Trial
 NEWTON_STEPS = 8
 HALVINGS = 4
 TRIES = 4
-NESTED_AT_MOST = 2
+NESTED_AT_MOST = 3
 DIFFERENCE = 1e-6
 TOLERANCES = {"xatol": 1e-15, "xrtol": 1e-13, "fatol": 1e-14, "frtol": 0.0}
 

@@ -164,7 +164,7 @@ def _pressures(ports: pd.DataFrame) -> Iterator[dict[str, float | None]]:
 
 def _plain(column: pd.Series) -> list[Any]:
     """Cells as JSON knows them: None for what is no number."""
-    if column.dtype == object:
+    if not pd.api.types.is_numeric_dtype(column):
         return column.tolist()
     cells = column.to_numpy(float)
     plain = cells.astype(object)
