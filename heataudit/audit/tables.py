@@ -44,10 +44,10 @@ def component_table(machine: Machine, solution: Solution, rows: slice = ALL) -> 
     is_void = np.array([kind == "void" for kind in state.kind], bool)
     kept = np.flatnonzero(~is_void | (state.flow != 0).any(axis=1))
     speeds = np.full((len(kept), len(range(*rows.indices(solution.phases)))), np.nan)
-    lines = machine.lines.set_index("name")
+    lines = dict(zip(machine.lines["name"], machine.lines[["inside_diameter", "count"]].to_numpy(float), strict=True))
     for row, k in enumerate(kept):
         if state.kind[k] == "line":
-            bore, count = lines.loc[state.name[k], ["inside_diameter", "count"]]
+            bore, count = lines[state.name[k]]
             speeds[row] = velocity(state.flow[k, rows], bore, count)
     wide = {
         "flow_L_min": state.flow[kept][:, rows] / L_MIN, "drop_bar": state.drop[kept][:, rows] / BAR,

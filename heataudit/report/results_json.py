@@ -78,7 +78,7 @@ def _parts(audit: Audit) -> Iterator[tuple[str, Any]]:
     yield "conditions", asdict(audit.conditions)
     yield "cycle", asdict(audit.cycle)
     yield "phases", None
-    yield "losses", by_component(audit.losses)[list(LOSSES)].to_dict("records")
+    yield "losses", by_component(audit.losses)[list(LOSSES)].pipe(_records)
     yield "loss_groups", audit.loss_groups
     yield "thermal", {key: getattr(audit.thermal, key) for key in THERMAL}
     yield "cooler", {key: getattr(audit.cooler, key) for key in COOLER}
@@ -123,7 +123,7 @@ def _phase_records(audit: Audit, rows: slice) -> Iterator[Record]:
         _pressures(ports),
         strict=True,
     )
-    phases = audit.phases[list(PHASE)].iloc[rows].to_dict("records")
+    phases = _records(audit.phases[list(PHASE)].iloc[rows])
     for phase, (of_pumps, of_actuators, parts, pump_parts, actuator_parts, pressures) in zip(
         phases, named, strict=True
     ):
@@ -131,6 +131,10 @@ def _phase_records(audit: Audit, rows: slice) -> Iterator[Record]:
             **phase, "pumps": of_pumps, "actuators": of_actuators,
             "components": {**pump_parts, **parts, **actuator_parts}, "ports": pressures,
         }  # fmt: skip
+
+
+def _records(table: pd.DataFrame) -> list[Record]:
+    return [dict(zip(table.columns, row, strict=True)) for row in table.itertuples(index=False, name=None)]
 
 
 def _actuator_keys(kind: str) -> tuple[str, ...]:

@@ -8,7 +8,7 @@ from heataudit.report.quantities import System, quantity
 GROUP_NAMES = {
     "load": "Useful work", "pump": "Pumps", "idle": "Idling", "bypass": "Bypass", "metering": "Metering",
     "lines": "Lines and filters", "overflow": "Relief valves", "lowering": "Lowering loads",
-    "actuators": "Actuators", "other": "Decompression, voids",
+    "actuators": "Actuators", "other": "Let-down, voids",
 }  # fmt: skip
 """Short names of the useful work and of the loss groups."""
 

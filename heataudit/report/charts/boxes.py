@@ -23,8 +23,8 @@ def text_boxes(figure: Figure) -> list[tuple[Text, Bbox]]:
     from matplotlib.text import Text
 
     canvas = FigureCanvasAgg(figure)
-    canvas.draw()
-    renderer = canvas.get_renderer()
+    canvas.draw()  # type: ignore[no-untyped-call]
+    renderer = canvas.get_renderer()  # type: ignore[no-untyped-call]
     hidden = set()
     for axis in figure.findobj(Axis):
         low, high = sorted(axis.get_view_interval())

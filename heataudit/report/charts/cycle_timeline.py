@@ -25,6 +25,7 @@ from heataudit.report.quantities import System, convert, quantity
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
     from matplotlib.figure import Figure
+    from matplotlib.ticker import MaxNLocator
 
 Floats = NDArray[np.float64]
 
@@ -134,7 +135,7 @@ def _draw_panel(axes: Axes, edges: Floats, curves: list[Curve]) -> None:
     _name_curves(axes, [curve.name for curve in curves], curves)
 
 
-def _few_ticks() -> object:
+def _few_ticks() -> MaxNLocator:
     from matplotlib.ticker import MaxNLocator
 
     return MaxNLocator(4, steps=[1, 2, 2.5, 5, 10])
@@ -209,7 +210,7 @@ def _title(audit: Audit, system: System) -> str:
     phases = audit.phases
     if not len(phases) or float(phases["heat_kW"].max()) <= 0:
         return "Pressure, flow and power over the cycle"
-    worst = phases.loc[phases["heat_kW"].idxmax()]
+    worst = phases.iloc[int(np.argmax(phases["heat_kW"].to_numpy()))]
     return f"Heat peaks at {quantity(float(worst['heat_kW']), 'kW', system)} in “{worst['phase']}”"
 
 

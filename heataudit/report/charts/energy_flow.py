@@ -105,10 +105,9 @@ def _title(audit: Audit) -> str:
     efficiency, groups = audit.cycle.efficiency, ranked_groups(audit)
     if efficiency is None or not groups:
         return "Where the energy goes"
-    name, energy = GROUP_NAMES[groups[0][0]], groups[0][1]
-    share = share_text(energy / audit.cycle.shaft_energy_kJ) if audit.cycle.shaft_energy_kJ > 0 else ""
-    most = f"; most is lost to {name[0].lower() + name[1:]}" + (f" ({share})" if share else "")
-    return f"{share_text(efficiency)} of the shaft energy becomes useful work{most}"
+    name, energy = GROUP_NAMES[groups[0][0]].lower(), groups[0][1]
+    largest = share_text(energy / audit.cycle.shaft_energy_kJ)
+    return f"{share_text(efficiency)} of the shaft energy does useful work; largest loss: {name}, {largest}"
 
 
 def _label(stream: Stream, total: float, system: System) -> str:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Hashable, Mapping
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -71,7 +72,7 @@ def draw(audit: Audit, system: System) -> Figure:
     return figure
 
 
-def _label(speed: float, guide: float, row: dict[str, object], unit: str) -> str:
+def _label(speed: float, guide: float, row: Mapping[Hashable, object], unit: str) -> str:
     phase = wrap(str(row["phase"]), 1.5, SMALL, lines=1)
     if speed == 0:
         return "no flow"

@@ -107,12 +107,8 @@ def _draw_panel(axes: Axes, table: pd.DataFrame, width: float, system: System) -
     axes.set_ylabel(f"Pressure [{to_pressure[1]}]", fontsize=SMALL, labelpad=1)
     power = quantity(float(table["power_kW"].sum()), "kW", system)
     name = wrap(str(table["phase"].iloc[0]), width, SMALL, bold=True, lines=1)
-    figure = axes.get_figure()
-    assert figure is not None
-    box = axes.get_position()
-    inch = 1 / float(figure.get_size_inches()[1])
-    figure.text(box.x0, box.y1 + 0.20 * inch, name, fontsize=SMALL, fontweight="bold")  # type: ignore[union-attr]
-    figure.text(box.x0, box.y1 + 0.05 * inch, power, fontsize=SMALL)  # type: ignore[union-attr]
+    for text, weight, inches in ((name, "bold", 0.20), (power, "normal", 0.05)):
+        axes.text(0, 1 + inches / PANEL, text, transform=axes.transAxes, fontsize=SMALL, fontweight=weight)
 
 
 def _ticks(axes: Axes) -> None:

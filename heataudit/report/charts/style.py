@@ -29,7 +29,7 @@ SMALL, NORMAL, TITLE = 8.0, 9.0, 11.5
 
 DPI = 200
 
-RC = {
+RC: dict[str, Any] = {
     "font.family": ["DejaVu Sans"], "font.size": NORMAL, "text.color": INK, "text.parse_math": False,
     "axes.edgecolor": QUIET, "axes.labelcolor": INK, "axes.linewidth": 0.8, "axes.spines.top": False,
     "axes.spines.right": False, "axes.unicode_minus": False, "xtick.color": QUIET, "ytick.color": QUIET,

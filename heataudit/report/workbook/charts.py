@@ -6,7 +6,7 @@ from openpyxl.worksheet.pagebreak import Break
 
 from heataudit.report.workbook.page import Report, picture, set_widths
 
-PICTURE_WIDTH, PAGE = 7.2, 10.0
+PICTURE_WIDTH, PAGE = 6.3, 10.2
 """Width of a picture and height of a page [in]."""
 
 HERE = ("losses-ranked", "cycle-timeline", "pressure-flow-rectangles", "line-velocities")

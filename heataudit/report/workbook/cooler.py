@@ -10,8 +10,8 @@ from heataudit.report.quantities import System, quantity, restate
 from heataudit.report.safe import printable
 from heataudit.report.workbook.page import Field, Report, paragraph, picture, put, write_table
 
-COLUMNS, PICTURE_WIDTH = 8, 7.2
-FACTS_WIDTH = 34.0
+COLUMNS, PICTURE_WIDTH = 10, 5.6
+FACTS_WIDTH = 30.0
 
 
 def write_cooler(report: Report) -> None:
@@ -23,7 +23,7 @@ def write_cooler(report: Report) -> None:
         The answers and the workbook.
     """
     audit, system = report.audit, report.system
-    sheet = report.sheet("Cooler", "Cooler and oil temperature", landscape=False)
+    sheet = report.sheet("Cooler", "Cooler and oil temperature")
     options = audit.cooler.options
     remarks = [restate(str(text), system, [str(name) for name in options["cooler"]]) for text in options["remark"]]
     fields = [
@@ -43,8 +43,9 @@ def write_cooler(report: Report) -> None:
     _write_facts(sheet, 4, facts)
     report.places.setdefault("Oil", (sheet.title, 4))
     report.places.setdefault("Cooler", (sheet.title, 4))
-    for name in ("heat-balance", "warm-up", "cooler-curves"):
-        row = picture(report, sheet, row + 1, name, PICTURE_WIDTH)
+    picture(report, sheet, row, "warm-up", PICTURE_WIDTH, left=PICTURE_WIDTH)
+    row = picture(report, sheet, row, "heat-balance", PICTURE_WIDTH)
+    row = picture(report, sheet, row, "cooler-curves", PICTURE_WIDTH)
     sheet.print_area = f"A1:J{row}"
 
 

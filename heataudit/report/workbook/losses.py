@@ -5,8 +5,9 @@ from __future__ import annotations
 import pandas as pd
 
 from heataudit.audit.model import GROUPS, Audit
+from heataudit.report.quantities import quantity
 from heataudit.report.safe import printable
-from heataudit.report.workbook.page import Field, Report, write_table
+from heataudit.report.workbook.page import Field, Report, put, write_table
 from heataudit.report.words import GROUP_MEANINGS, GROUP_NAMES
 
 
@@ -35,7 +36,10 @@ def write_losses(report: Report) -> None:
         Field("heat_kJ", "Heat in a cycle", bar=True), Field("share", "Of the heat", percent=True),
         Field("mean_kW", "Mean heat"), Field("annual_kWh", "Heat in a year"), *money,
     ]  # fmt: skip
-    write_table(report, groups, 4, group_table(audit), fields, name="LossesByKind")
+    row = write_table(report, groups, 4, group_table(audit), fields, name="LossesByKind")
+    total = quantity(audit.cycle.heat_energy_kJ, "kJ", report.system)
+    yearly = quantity(audit.annual.loss_kWh, "kWh", report.system)
+    put(groups, row, 1, f"All kinds together: {total} in a cycle, {yearly} in a year.", bold=True)
 
 
 def money_field(audit: Audit) -> list[Field]:
@@ -52,7 +56,7 @@ def money_field(audit: Audit) -> list[Field]:
 
 
 def group_table(audit: Audit) -> pd.DataFrame:
-    """Loss groups with energy, power and money; the last row is their sum.
+    """Loss groups with energy, power and money.
 
     Parameters
     ----------
@@ -69,8 +73,6 @@ def group_table(audit: Audit) -> pd.DataFrame:
         "mean_kW": heat.to_numpy() / audit.cycle.duration_s,
         "annual_kWh": by_group["annual_kWh"].to_numpy(),
     }).sort_values("heat_kJ", ascending=False, kind="stable", ignore_index=True)  # fmt: skip
-    numbers = table.select_dtypes("number").sum()
-    table.loc[len(table)] = {"group": "All", "meaning": "all losses", **numbers.to_dict()}
     total = audit.cycle.heat_energy_kJ
     table["share"] = table["heat_kJ"] / total if total else 0.0
     table["annual_cost"] = table["annual_kWh"] * (0.0 if price is None else price)

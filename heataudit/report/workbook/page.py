@@ -31,7 +31,10 @@ LINE = 13.5
 CHARACTER = 7 / 96
 """Width of a column's unit [in], with the padding left out."""
 
-WIDEST, NARROWEST = 46.0, 8.0
+ARIAL = 0.88
+"""Width of the report's font per that of the charts' (measured over the texts of a report)."""
+
+WIDEST, NARROWEST = 46.0, 7.0
 """Column widths [characters] between which a table's columns are fitted."""
 
 BAR, TABLE_STYLE = "A9BDCB", "TableStyleLight1"
@@ -115,12 +118,12 @@ def colour_of(hexadecimal: str) -> str:
 
 def put(
     sheet: Worksheet, row: int, column: int, value: Any, *, bold: bool = False, size: float = 10, colour: str = INK,
-    wrapped: bool = False, across: str | None = None,
+    wrapped: bool = False, across: str | None = None, top: bool = False,
 ) -> Cell:  # fmt: skip
     """Write a text or a number; a text is never a formula, a number that is none stays blank."""
     cell: Cell = sheet.cell(row, column)  # type: ignore[assignment]
     cell.font = Font(name=FONT, size=size, bold=bold, color=colour_of(colour))
-    cell.alignment = Alignment(vertical="top" if wrapped else "center", wrap_text=wrapped, horizontal=across)
+    cell.alignment = Alignment(vertical="top" if wrapped or top else "center", wrap_text=wrapped, horizontal=across)
     if isinstance(value, str):
         text = printable(value)[:32000]
         cell.value = text
@@ -147,12 +150,22 @@ def put_formula(
 
 def paragraph(sheet: Worksheet, row: int, text: str, columns: int, *, bold: bool = False, size: float = 10) -> int:
     """A text over several columns, in as many lines as it needs; the next row."""
-    width = sum(width_of(sheet, column) for column in range(1, columns + 1)) * CHARACTER
-    lines = wrap(text, width, size, bold, lines=40).count("\n") + 1
+    width = sum(width_of(sheet, column) for column in range(1, columns + 1))
+    lines = lines_of(text, width - 1, size, bold)
     put(sheet, row, 1, text, bold=bold, size=size, wrapped=True)
     sheet.merge_cells(start_row=row, start_column=1, end_row=row, end_column=columns)
     sheet.row_dimensions[row].height = lines * LINE * size / 10 + 2
     return row + 1
+
+
+def characters(text: str, bold: bool = False) -> float:
+    """Width of a text of a table [characters]."""
+    return text_size(printable(text), 10, bold)[0] * ARIAL / CHARACTER
+
+
+def lines_of(text: str, width: float, size: float = 10, bold: bool = False) -> int:
+    """Lines that a text takes in a width [characters]."""
+    return wrap(text, width * CHARACTER / ARIAL, size, bold, lines=60).count("\n") + 1
 
 
 def width_of(sheet: Worksheet, column: int) -> float:
@@ -234,21 +247,24 @@ def _write_column(sheet: Worksheet, place: tuple[int, int], header: str, values:
     head.fill = PatternFill("solid", fgColor=colour_of(BAND))
     head.border = Border(bottom=Side(style="medium", color=colour_of(INK)))
     words = any(isinstance(value, str) for value in values)
+    whole = not words and all(value != value or float(value).is_integer() for value in values)
     shown = [str(value) if isinstance(value, str) else _shown(value, percent) for value in values]
-    content = max((text_size(printable(text), 10)[0] / CHARACTER for text in shown[:2000]), default=0.0) + 2
-    longest_word = max(text_size(word, 10, True)[0] / CHARACTER for word in header.split(" ")) + 4
+    content = max((characters(text) for text in shown), default=0.0) + 1.5
+    longest_word = max(characters(word, bold=True) for word in header.split(" ")) + 2.5
     width = float(np.clip(max(content, longest_word), NARROWEST, WIDEST))
     letter = get_column_letter(column)
     width = max(width, width_of(sheet, column) if letter in sheet.column_dimensions else 0.0)
     sheet.column_dimensions[letter].width = width
-    lines = wrap(header, (width - 3) * CHARACTER, 10, True, lines=5).count("\n") + 1
+    lines = lines_of(header, width - 2, bold=True)
     sheet.row_dimensions[row].height = max(sheet.row_dimensions[row].height or 0.0, lines * LINE + 4)
     for offset, value in enumerate(values, 1):
-        cell = put(sheet, row + offset, column, value, wrapped=words, across=None if words else "right")
+        cell = put(sheet, row + offset, column, value, wrapped=words, across=None if words else "right", top=True)
         if percent and not isinstance(value, str):
-            cell.number_format = "0.0%" if value == value and abs(value) < 0.0995 else "0%"
+            cell.number_format = "0.0%" if 0 < abs(value) < 0.0995 else "0%"
+        elif whole:
+            cell.number_format = "#,##0"
         if words and content > WIDEST:
-            lines = wrap(str(value), (width - 2) * CHARACTER, 10, lines=30).count("\n") + 1
+            lines = lines_of(str(value), width - 1)
             height = sheet.row_dimensions[row + offset].height or 0.0
             sheet.row_dimensions[row + offset].height = max(height, lines * LINE + 2)
 
@@ -261,15 +277,19 @@ def _shown(value: Any, percent: bool) -> str:
     return f"{100 * value:.1f}%" if percent else grouped(float(value))
 
 
-def picture(report: Report, sheet: Worksheet, row: int, name: str, width: float) -> int:
-    """A chart as wide as told [in] with its corner in a row; the row below it, the same row where there is none."""
+def picture(report: Report, sheet: Worksheet, row: int, name: str, width: float, left: float = 0.0) -> int:
+    """A chart as wide as told [in], some way [in] from the left; the row below it, the same where there is none."""
     path = report.pictures.get(name)
     if path is None:
         return row
     image = Image(str(path))
     height = width * image.height / image.width
     image.width, image.height = int(width * 96), int(height * 96)
-    sheet.add_image(image, f"A{row}")
+    column = 1
+    while left > 0:
+        left -= width_of(sheet, column) * CHARACTER
+        column += 1
+    sheet.add_image(image, f"{get_column_letter(column)}{row}")
     used = 0.0
     while used < height * 72 + 6:
         used += sheet.row_dimensions[row].height or 15.0

@@ -57,7 +57,7 @@ def _write(sheet: Worksheet, row: int, lines: list[Line]) -> int:
     """Rows one below the other; the row after them."""
     for number, line in enumerate(lines, row):
         put(sheet, number, 1, line.name)
-        put(sheet, number, 3, line.unit)
+        put(sheet, number, 3, line.unit, across="center")
         put(sheet, number, 4, line.remark)
         if isinstance(line.value, str):
             cell = put_formula(sheet, number, 2, line.value, LIVE_FORMAT, bold=not line.changeable)
