@@ -58,5 +58,5 @@ def clipped(figure: Figure) -> list[str]:
     page = figure.bbox
     return [
         text.get_text() for text, box in text_boxes(figure)
-        if np.any(box.min < page.min - SLACK) or np.any(box.max > page.max + SLACK)
+        if np.any(np.subtract(page.min, box.min) > SLACK) or np.any(np.subtract(box.max, page.max) > SLACK)
     ]  # fmt: skip

@@ -9,7 +9,7 @@ from collections.abc import Iterator, Sequence
 from contextlib import contextmanager
 from functools import cache
 from pathlib import Path
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING, Any, cast
 
 from heataudit.report.charts.palette import INK, QUIET
 from heataudit.report.safe import printable
@@ -29,7 +29,7 @@ SMALL, NORMAL, TITLE = 8.0, 9.0, 11.5
 
 DPI = 200
 
-RC: dict[str, Any] = {
+RC = {
     "font.family": ["DejaVu Sans"], "font.size": NORMAL, "text.color": INK, "text.parse_math": False,
     "axes.edgecolor": QUIET, "axes.labelcolor": INK, "axes.linewidth": 0.8, "axes.spines.top": False,
     "axes.spines.right": False, "axes.unicode_minus": False, "xtick.color": QUIET, "ytick.color": QUIET,
@@ -43,7 +43,7 @@ def chart_style() -> Iterator[None]:
     """Settings under which charts are drawn and saved."""
     import matplotlib
 
-    with matplotlib.rc_context(RC), warnings.catch_warnings():
+    with matplotlib.rc_context(cast(Any, RC)), warnings.catch_warnings():
         warnings.filterwarnings("ignore", message="Glyph .* missing")  # a name in a script that the font lacks
         yield
 

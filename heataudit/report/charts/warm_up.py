@@ -36,10 +36,11 @@ def draw(audit: Audit, system: System) -> Figure:
     wanted = [("Without cooler" if cooled else "Oil", "without_cooler_C", HEAT, "-")]
     if cooled:
         wanted.append(("With the existing cooler", "with_cooler_C", COOLER, (0, (6, 2))))  # type: ignore[arg-type]
-    curves = [
-        Curve(name, time, convert(thermal.warm_up[key].to_numpy(float), "°C", system)[0], colour, style)
-        for name, key, colour, style in wanted
-    ]
+    curves = []
+    for name, key, colour, style in wanted:
+        warm = thermal.warm_up[key].to_numpy(float)
+        known = np.isfinite(warm)  # past 120 °C it is not followed
+        curves.append(Curve(name, time[known], convert(warm[known], "°C", system)[0], colour, style))
     limit = float(convert(thermal.highest_temperature_C, "°C", system)[0])
     remark = "Means over each duty cycle, repeated without a break."
     figure, top = titled_figure(_title(audit, cooled, system), remark, BODY)

@@ -8,8 +8,8 @@ from openpyxl.worksheet.worksheet import Worksheet
 from heataudit.audit.model import Audit, Finding
 from heataudit.report.charts.palette import BAND, HEAT, INK, QUIET
 from heataudit.report.quantities import System, grouped, quantity, restate
-from heataudit.report.workbook.page import LINE, Report, colour_of, paragraph, picture, put, set_widths
 from heataudit.report.words import GROUP_NAMES, findings_in_order, oil_sentence, ranked_groups, share_text
+from heataudit.report.workbook.page import LINE, Report, colour_of, paragraph, picture, put, set_widths
 
 COLUMNS, COLUMN_WIDTH, PICTURE_WIDTH = 6, 16.0, 7.0
 MOST_FINDINGS, MOST_LOSSES = 4, 5

@@ -4,9 +4,9 @@ from __future__ import annotations
 
 from openpyxl.worksheet.pagebreak import Break
 
-from heataudit.report.workbook.page import Report, picture, set_widths
+from heataudit.report.workbook.page import ROW, Report, picture, set_widths
 
-PICTURE_WIDTH, PAGE = 6.3, 10.2
+PICTURE_WIDTH, PAGE = 5.7, 10.2
 """Width of a picture and height of a page [in]."""
 
 HERE = ("losses-ranked", "cycle-timeline", "pressure-flow-rectangles", "line-velocities")
@@ -28,7 +28,7 @@ def write_charts_sheet(report: Report) -> None:
         if name not in report.pictures:
             continue
         after = picture(report, sheet, row, name, PICTURE_WIDTH)
-        if row > 4 and (after - page_start) * 15 / 72 > PAGE:
+        if row > 4 and (after - page_start) * ROW / 72 > PAGE:
             sheet.row_breaks.append(Break(id=row - 1))
             page_start = row
         row = after + 1

@@ -8,9 +8,9 @@ from heataudit.audit.model import Audit
 from heataudit.report.charts.warm_up import duration_text
 from heataudit.report.quantities import System, quantity, restate
 from heataudit.report.safe import printable
-from heataudit.report.workbook.page import Field, Report, paragraph, picture, put, write_table
+from heataudit.report.workbook.page import CHARACTER, Field, Report, paragraph, picture, put, width_of, write_table
 
-COLUMNS, PICTURE_WIDTH = 10, 5.6
+COLUMNS = 10
 FACTS_WIDTH = 30.0
 
 
@@ -38,14 +38,17 @@ def write_cooler(report: Report) -> None:
     sheet.column_dimensions["A"].width = FACTS_WIDTH
     put(sheet, start + 1, 1, "Coolers to choose from, the best first", bold=True, size=11)
     shown = options.assign(remark=remarks, oil_flow_L_min=_flows(audit, system))
-    row = write_table(report, sheet, start + 2, shown, fields, name="CoolersToChooseFrom", freeze=False, places="cooler")
+    row = write_table(
+        report, sheet, start + 2, shown, fields, name="CoolersToChooseFrom", freeze=False, places="cooler"
+    )
     paragraph(sheet, 2, restate(audit.cooler.verdict, system, list(options["cooler"])), COLUMNS, bold=True)
     _write_facts(sheet, 4, facts)
     report.places.setdefault("Oil", (sheet.title, 4))
     report.places.setdefault("Cooler", (sheet.title, 4))
-    picture(report, sheet, row, "warm-up", PICTURE_WIDTH, left=PICTURE_WIDTH)
-    row = picture(report, sheet, row, "heat-balance", PICTURE_WIDTH)
-    row = picture(report, sheet, row, "cooler-curves", PICTURE_WIDTH)
+    half = sum(width_of(sheet, column) for column in range(1, COLUMNS + 1)) * CHARACTER / 2
+    picture(report, sheet, row, "warm-up", half - 0.1, left=half)
+    row = picture(report, sheet, row, "heat-balance", half - 0.1)
+    row = picture(report, sheet, row, "cooler-curves", half - 0.1)
     sheet.print_area = f"A1:J{row}"
 
 

@@ -7,8 +7,8 @@ from openpyxl.styles import Font
 
 from heataudit.report.charts.palette import HEAT
 from heataudit.report.quantities import restate
-from heataudit.report.workbook.page import FONT, Field, Report, colour_of, put, write_table
 from heataudit.report.words import findings_in_order
+from heataudit.report.workbook.page import FONT, Field, Report, colour_of, put, write_table
 
 TOPICS = {
     "relief-flowing": "Oil over a relief valve", "line-velocity": "Fast oil in a line",

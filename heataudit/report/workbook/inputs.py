@@ -22,7 +22,7 @@ def write_inputs(report: Report) -> None:
     counts = table["source"].value_counts()
     note = (
         f"{counts.get('typed', 0):,} typed, {counts.get('default', 0):,} defaults, {counts.get('estimate', 0):,} "
-        "estimates: replace the estimates that matter by data sheets or readings. The duty cycle is on the sheet Phases."
+        "estimates: replace those that matter by data sheets or readings. The duty cycle is on the sheet Phases."
     )
     sheet = report.sheet("Inputs used", "Inputs used", note)
     fields = [

@@ -7,8 +7,8 @@ import pandas as pd
 from heataudit.audit.model import GROUPS, Audit
 from heataudit.report.quantities import quantity
 from heataudit.report.safe import printable
-from heataudit.report.workbook.page import Field, Report, put, write_table
 from heataudit.report.words import GROUP_MEANINGS, GROUP_NAMES
+from heataudit.report.workbook.page import Field, Report, put, write_table
 
 
 def write_losses(report: Report) -> None:

@@ -6,8 +6,8 @@ import numpy as np
 
 from heataudit.audit.model import Audit
 from heataudit.report.quantities import System, grouped, quantity, restate
-from heataudit.report.workbook.page import Report, paragraph, put, set_widths
 from heataudit.report.words import CAUTIONS
+from heataudit.report.workbook.page import Report, paragraph, put, set_widths
 
 METHOD = (
     "Every phase of the duty cycle is solved as a network of pumps, lines, valves and actuators in a steady state: "
@@ -19,8 +19,8 @@ METHOD = (
     "that drive give power back; trapped oil that is let down makes heat once for each time.",
     "Oil: viscosity over temperature by the grade and index given, over pressure in lines, density and specific heat "
     "over temperature.",
-    "The tank gives off heat by its walls to the air. The oil's temperature is the one at which as much heat goes out as "
-    "comes in, mean of the cycle; the cycle is solved anew at each temperature.",
+    "The tank gives off heat by its walls to the air. The oil's temperature is the one at which as much heat goes out "
+    "as comes in, mean of the cycle; the cycle is solved anew at each temperature.",
     "The cooler is sized for the hottest stretch of the cycle that is as long as a time constant of the tank, with oil "
     "at the highest temperature and air at the design ambient.",
 )  # fmt: skip
@@ -73,9 +73,9 @@ def quality(audit: Audit, system: System) -> list[str]:
         f"{solved:,} of {phases:,} phases were solved, in {int(solution.iterations.max())} steps at most; the worst "
         f"residual is {worst:.1e} of the pump flow or of {quantity(100.0, 'bar', system)}.",
         f"Bookkeeping error: power in and power out differ by {cycle.balance_error_kJ:.1e} kJ in a cycle of "
-        f"{grouped(cycle.shaft_energy_kJ)} kJ shaft energy. This says that the sums are right, not that the inputs are.",
-        f"{estimates:,} inputs are estimates with the plus-minus that the sheet Inputs used states; the answers can be no "
-        "better than they are. Measured pressures, flows and temperatures are the best check.",
+        f"{grouped(cycle.shaft_energy_kJ)} kJ shaft energy. That proves the sums, not the inputs.",
+        f"{estimates:,} inputs are estimates with the plus-minus on the sheet Inputs used; the answers can be no better "
+        "than they are. Measured pressures, flows and temperatures are the best check.",
     ]  # fmt: skip
 
 

@@ -12,6 +12,8 @@ import pandas as pd
 from openpyxl import Workbook
 from openpyxl.cell import Cell
 from openpyxl.drawing.image import Image
+from openpyxl.drawing.spreadsheet_drawing import AnchorMarker, OneCellAnchor
+from openpyxl.drawing.xdr import XDRPositiveSize2D
 from openpyxl.formatting.rule import DataBarRule
 from openpyxl.styles import Alignment, Border, Font, PatternFill, Side
 from openpyxl.utils import get_column_letter
@@ -28,6 +30,9 @@ FONT = "Arial"
 LINE = 13.5
 """Height of a line of text [pt]."""
 
+ROW = 15.0
+"""Height of a row of which nothing else is said [pt]."""
+
 CHARACTER = 7 / 96
 """Width of a column's unit [in], with the padding left out."""
 
@@ -39,6 +44,12 @@ WIDEST, NARROWEST = 46.0, 7.0
 
 BAR, TABLE_STYLE = "A9BDCB", "TableStyleLight1"
 A4 = "9"
+EMU = 914400
+"""Units of a drawing in an inch."""
+
+PORTRAIT = 100.0
+"""Width of a table [characters] up to which the paper stands upright."""
+
 
 
 @dataclass
@@ -81,6 +92,7 @@ class Report:
         """
         sheet = self.book.create_sheet(title)
         sheet.sheet_view.showGridLines = False
+        sheet.sheet_format.defaultRowHeight, sheet.sheet_format.customHeight = ROW, True
         put(sheet, 1, 1, heading, bold=True, size=14)
         sheet.row_dimensions[1].height = 22
         if note:
@@ -118,18 +130,21 @@ def colour_of(hexadecimal: str) -> str:
 
 def put(
     sheet: Worksheet, row: int, column: int, value: Any, *, bold: bool = False, size: float = 10, colour: str = INK,
-    wrapped: bool = False, across: str | None = None, top: bool = False,
+    wrapped: bool = False, across: str | None = None, top: bool = False, indent: int = 0,
 ) -> Cell:  # fmt: skip
     """Write a text or a number; a text is never a formula, a number that is none stays blank."""
     cell: Cell = sheet.cell(row, column)  # type: ignore[assignment]
     cell.font = Font(name=FONT, size=size, bold=bold, color=colour_of(colour))
-    cell.alignment = Alignment(vertical="top" if wrapped or top else "center", wrap_text=wrapped, horizontal=across)
+    cell.alignment = Alignment(
+        vertical="top" if wrapped or top else "center", wrap_text=wrapped, horizontal=across or ("left" if indent else None),
+        indent=indent,
+    )
     if isinstance(value, str):
         text = printable(value)[:32000]
         cell.value = text
         cell.data_type = "s"
         if starts_formula(text):
-            cell.quotePrefix = True  # type: ignore[assignment]
+            cell.quotePrefix = True
     elif isinstance(value, (bool, np.bool_)):
         put(sheet, row, column, "yes" if value else "no", size=size, colour=colour)
     elif value is not None and np.isfinite(value):
@@ -218,18 +233,28 @@ def write_table(
         _write_column(sheet, (row, column), header, values, wanted.percent)
         if wanted.bar:
             cells = f"{get_column_letter(column)}{row + 1}:{get_column_letter(column)}{last}"
-            sheet.conditional_formatting.add(
-                cells, DataBarRule(start_type="num", start_value=0, end_type="max", color=BAR)
-            )
+            rule = DataBarRule(start_type="num", start_value=0, end_type="max", color=BAR)  # type: ignore[no-untyped-call]
+            sheet.conditional_formatting.add(cells, rule)
     for offset, text in enumerate(frame[places] if places else ()):
         report.places.setdefault(str(text), (sheet.title, row + 1 + offset))
     native = Table(displayName=name, ref=f"A{row}:{get_column_letter(len(fields))}{last}")
     native.tableStyleInfo = TableStyleInfo(name=TABLE_STYLE, showRowStripes=True)
     sheet.add_table(native)
     if freeze:
+        width = sum(width_of(sheet, column) for column in range(1, len(fields) + 1))
+        sheet.page_setup.orientation = "portrait" if width <= PORTRAIT else "landscape"
+        _fit_note(sheet, len(fields))
         sheet.freeze_panes = f"B{row + 1}"
         sheet.print_title_rows = f"{row}:{row}"
     return last + 2
+
+
+def _fit_note(sheet: Worksheet, columns: int) -> None:
+    """Wrap the note below the heading to the table's width."""
+    note = sheet.cell(2, 1).value
+    if note:
+        paragraph(sheet, 2, str(note), columns)
+        sheet.cell(2, 1).font = Font(name=FONT, size=10, color=colour_of(QUIET))
 
 
 def _cells(report: Report, column: pd.Series, wanted: Field) -> tuple[list[Any], str]:
@@ -243,28 +268,31 @@ def _cells(report: Report, column: pd.Series, wanted: Field) -> tuple[list[Any],
 
 def _write_column(sheet: Worksheet, place: tuple[int, int], header: str, values: list[Any], percent: bool) -> None:
     row, column = place
-    head = put(sheet, row, column, header, bold=True, wrapped=True)
+    words = any(isinstance(value, (str, bool, np.bool_)) for value in values)
+    head = put(sheet, row, column, header, bold=True, wrapped=True, indent=int(column > 1 and words))
     head.fill = PatternFill("solid", fgColor=colour_of(BAND))
     head.border = Border(bottom=Side(style="medium", color=colour_of(INK)))
-    words = any(isinstance(value, str) for value in values)
     whole = not words and all(value != value or float(value).is_integer() for value in values)
     shown = [str(value) if isinstance(value, str) else _shown(value, percent) for value in values]
-    content = max((characters(text) for text in shown), default=0.0) + 1.5
+    content = max((characters(text) for text in shown), default=0.0) + 1.5 + 1.5 * words
     longest_word = max(characters(word, bold=True) for word in header.split(" ")) + 2.5
     width = float(np.clip(max(content, longest_word), NARROWEST, WIDEST))
     letter = get_column_letter(column)
     width = max(width, width_of(sheet, column) if letter in sheet.column_dimensions else 0.0)
     sheet.column_dimensions[letter].width = width
-    lines = lines_of(header, width - 2, bold=True)
+    lines = lines_of(header, width - 1.5 - 1.5 * words, bold=True)
     sheet.row_dimensions[row].height = max(sheet.row_dimensions[row].height or 0.0, lines * LINE + 4)
     for offset, value in enumerate(values, 1):
-        cell = put(sheet, row + offset, column, value, wrapped=words, across=None if words else "right", top=True)
+        cell = put(
+            sheet, row + offset, column, value, wrapped=words, across=None if words else "right", top=True,
+            indent=int(words and column > 1),
+        )  # fmt: skip
         if percent and not isinstance(value, str):
             cell.number_format = "0.0%" if 0 < abs(value) < 0.0995 else "0%"
         elif whole:
             cell.number_format = "#,##0"
         if words and content > WIDEST:
-            lines = lines_of(str(value), width - 1)
+            lines = lines_of(str(value), width - 2.5)
             height = sheet.row_dimensions[row + offset].height or 0.0
             sheet.row_dimensions[row + offset].height = max(height, lines * LINE + 2)
 
@@ -284,14 +312,16 @@ def picture(report: Report, sheet: Worksheet, row: int, name: str, width: float,
         return row
     image = Image(str(path))
     height = width * image.height / image.width
-    image.width, image.height = int(width * 96), int(height * 96)
     column = 1
-    while left > 0:
+    while left >= width_of(sheet, column) * CHARACTER:
         left -= width_of(sheet, column) * CHARACTER
         column += 1
-    sheet.add_image(image, f"{get_column_letter(column)}{row}")
+    corner = AnchorMarker(col=column - 1, colOff=int(left * EMU), row=row - 1)
+    size = XDRPositiveSize2D(int(width * EMU), int(height * EMU))
+    image.anchor = OneCellAnchor(_from=corner, ext=size)
+    sheet.add_image(image)
     used = 0.0
     while used < height * 72 + 6:
-        used += sheet.row_dimensions[row].height or 15.0
+        used += sheet.row_dimensions[row].height or ROW
         row += 1
     return row

@@ -42,7 +42,8 @@ def write_lines(report: Report) -> None:
     ]  # fmt: skip
     after = write_table(report, sheet, 4, table, fields, name="LinesOfMachine", places="line")
     letter = get_column_letter([field.key for field in fields].index("over") + 1)
-    red = CellIsRule(operator="greaterThan", formula=["1"], font=Font(bold=True, color=colour_of(BEYOND)))
+    font = Font(bold=True, color=colour_of(BEYOND))
+    red = CellIsRule(operator="greaterThan", formula=["1"], font=font)  # type: ignore[no-untyped-call]
     sheet.conditional_formatting.add(f"{letter}5:{letter}{after}", red)
 
 

@@ -8,8 +8,8 @@ from numpy.typing import NDArray
 
 from heataudit.audit.model import GROUPS, Audit
 from heataudit.audit.tables import actuator_table, pump_table
-from heataudit.report.workbook.page import Field, Report, write_table
 from heataudit.report.words import GROUP_NAMES
+from heataudit.report.workbook.page import Field, Report, write_table
 
 MOST_PHASES = 200
 """Phases that the report shows; phases.csv has all."""
@@ -44,7 +44,7 @@ def write_phases(report: Report) -> None:
     audit = report.audit
     numbers = shown_phases(audit)
     note = _note(audit, numbers)
-    sheet = report.sheet("Phases", "Phases of the duty cycle", f"Mean powers of each phase, heat by kind of loss.{note}")
+    sheet = report.sheet("Phases", "Phases of the duty cycle", f"Mean powers, heat by kind of loss.{note}")
     table = audit.phases.iloc[numbers].assign(number=numbers + 1)
     fields = [
         Field("number", "No."), Field("phase", "Phase"), Field("duration_s", "Duration"), Field("repeats", "Repeats"),

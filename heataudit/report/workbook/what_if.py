@@ -64,8 +64,9 @@ def _write(sheet: Worksheet, row: int, lines: list[Line]) -> int:
         else:
             cell = put(sheet, number, 2, line.value, across="right")
         if line.changeable:
+            edge = Side(style="thin", color=colour_of(INK))
             cell.fill = PatternFill("solid", fgColor=INPUT_FILL)
-            cell.border = Border(*[Side(style="thin", color=colour_of(INK))] * 4)
+            cell.border = Border(left=edge, right=edge, top=edge, bottom=edge)
             cell.protection = Protection(locked=False)
             if not isinstance(line.value, str):
                 cell.number_format = "General"
