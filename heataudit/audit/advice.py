@@ -8,7 +8,7 @@ import numpy as np
 import pandas as pd
 
 from heataudit.audit.cold_start import LEAST_INLET
-from heataudit.audit.figures import BAR, sig
+from heataudit.audit.figures import BAR, L_MIN, sig
 from heataudit.audit.findings import Solved, share_of_shaft
 from heataudit.audit.model import Conditions, Cooler, Finding, Thermal
 from heataudit.machine import Cycle, Machine
@@ -20,6 +20,12 @@ LEAST_VISCOSITY, MOST_VISCOSITY = 10.0, 500.0
 
 MOST_START_VISCOSITY = 1000.0
 """Viscosity [mm²/s] up to which pumps may be started (common practice)."""
+
+COLD_RELIEF_SHARE = 0.01
+"""Flow that only cold oil sends over a relief valve, per pump flow [-], from which it is reported (judgement)."""
+
+MOST_COLD_DROP = 3.5
+"""Drop of a cooler or filter [bar] above which its bypass should be open (common practice: 1.7 to 3.5 bar)."""
 
 METERING_SHARE = 0.30
 """Metering losses per shaft energy [-] from which they are reported (judgement)."""
@@ -173,3 +179,57 @@ def cold_findings(machine: Machine, table: pd.DataFrame, viscosity: float) -> It
                 f"absolute at its inlet; a {types[row['pump']]} pump wants {sig(least)} bar or more. Start at low "
                 "speed without load, warm the oil, or widen the suction line.",
             )  # fmt: skip
+
+
+def cold_flow_findings(cycle: Cycle, cold: Solution, warm: Solution) -> Iterator[Finding]:
+    """What cold oil does elsewhere: flow that goes over relief valves, drops of coolers and filters in the network.
+
+    Parameters
+    ----------
+    cycle
+        The phases.
+    cold, warm
+        The phases solved at the start temperature and at the highest oil temperature.
+    """
+    start, hot = (f"{sig(float(state.oil_temperature[0]) - KELVIN)} °C" for state in (cold, warm))
+    components = cold.components
+    pumped = np.abs(cold.pumps.flow.sum(axis=0))
+    for k, (name, kind) in enumerate(zip(components.name, components.kind, strict=True)):
+        flow, before = components.flow[k], warm.components.flow[warm.components.name.index(name)]
+        drop = np.abs(components.drop[k]) / BAR
+        only_cold = (flow > COLD_RELIEF_SHARE * pumped) & (before <= COLD_RELIEF_SHARE * pumped)
+        if kind == "relief" and only_cold.any():
+            worst = int(np.argmax(np.where(only_cold, flow, 0.0)))
+            yield Finding(
+                "cold-start", "warning", name, str(cycle.phase[worst]),
+                f"With oil of {start} {sig(flow[worst] / L_MIN)} L/min go over {name} at {sig(drop[worst])} bar, with "
+                f"oil of {hot} next to nothing: cold oil needs the pressure in the lines. Warm it up at low flow "
+                f"before work. Worst in {cycle.phase[worst]}.",
+            )  # fmt: skip
+        if kind in ("cooler", "filter") and (drop > MOST_COLD_DROP).any():
+            worst = int(np.argmax(drop))
+            yield Finding(
+                "cold-start", "warning", name, str(cycle.phase[worst]),
+                f"With oil of {start} {name} drops {sig(drop[worst])} bar; above {sig(MOST_COLD_DROP)} bar a bypass "
+                f"should be open. Fit one, or warm the oil up at low flow. Worst in {cycle.phase[worst]}.",
+            )  # fmt: skip
+
+
+def cold_cooler_findings(cooler: Cooler, thermal: Thermal) -> Iterator[Finding]:
+    """A chosen cooler that drops much on cold oil.
+
+    Parameters
+    ----------
+    cooler
+        The choice.
+    thermal
+        Gives the start temperature.
+    """
+    drop = cooler.drop_cold_bar
+    if cooler.choice is not None and drop is not None and drop > MOST_COLD_DROP:
+        yield Finding(
+            "cold-start", "note", cooler.choice, "",
+            f"{cooler.choice} drops {sig(drop)} bar on oil of {sig(thermal.start_temperature_C)} °C; above "
+            f"{sig(MOST_COLD_DROP)} bar a bypass should be open. Order it with one, and check the pressure that its "
+            "core bears.",
+        )  # fmt: skip

@@ -6,7 +6,14 @@ from importlib.metadata import PackageNotFoundError, version
 
 import pandas as pd
 
-from heataudit.audit.advice import cold_findings, oil_findings, unsolved_findings, waste_findings
+from heataudit.audit.advice import (
+    cold_cooler_findings,
+    cold_findings,
+    cold_flow_findings,
+    oil_findings,
+    unsolved_findings,
+    waste_findings,
+)
 from heataudit.audit.annual import drive_table, drives, with_annual, year
 from heataudit.audit.cold_start import cold_start_table
 from heataudit.audit.cooler import size_cooler
@@ -17,7 +24,7 @@ from heataudit.audit.model import Audit, Conditions, Finding, Thermal
 from heataudit.audit.rectangles import rectangle_table
 from heataudit.audit.states import Solver, network, solve_at
 from heataudit.audit.surroundings import Surroundings, cycle_mean, other_heat
-from heataudit.audit.thermal import Balance, HeatCurve, Sample, find_balance, heat_curve, sample
+from heataudit.audit.thermal import Balance, HeatCurve, find_balance, heat_curve, sample
 from heataudit.audit.warm_up import ripple, warm_up, warm_up_table
 from heataudit.machine import Cycle, Machine
 from heataudit.network.solution import Solution
@@ -43,8 +50,12 @@ def audit(machine: Machine, solver: Solver = network) -> Audit:
     """
     cycle, around = machine.cycle, Surroundings(machine)
     curve = heat_curve(around, cycle, solver)
-    cold_table, cold_notes = _cold_start(machine, solver)
-    hot, hot_notes = _hottest(around, cycle, solver)
+    cold, warm = (
+        next(iter(solve_at(solver, machine, cycle, [machine.general[f"{state}_temperature"]])))
+        for state in ("start", "highest_oil")
+    )
+    cold_table = cold_start_table(machine, cycle, cold)
+    hot = sample(around, cycle, warm)
     bare, balance = _balances(curve, cycle, solver)
     temperature, basis, solution = _conditions(machine, balance, solver)
 
@@ -74,10 +85,13 @@ def audit(machine: Machine, solver: Solver = network) -> Audit:
         cold_start=cold_table,
         findings=_in_order(
             *phase_findings(solved),
-            *hot_notes,
+            *unsolved_findings("Cooler", cycle, warm),
             *oil_findings(conditions, thermal, cooler),
             *waste_findings(solved),
-            *cold_notes,
+            *unsolved_findings("Cold start", cycle, cold),
+            *cold_findings(machine, cold_table, float(cold.viscosity[0]) * 1e6),
+            *cold_flow_findings(cycle, cold, warm),
+            *cold_cooler_findings(cooler, thermal),
         ),
     )
 
@@ -88,21 +102,6 @@ def _balances(curve: HeatCurve, cycle: Cycle, solver: Solver) -> tuple[tuple[flo
     balance = find_balance(curve, cycle, solver, 0.0)
     bare = (None, curve) if balance is None else (balance.temperature, balance.curve)
     return bare, balance if capacity == 0 else find_balance(curve, cycle, solver, capacity)
-
-
-def _cold_start(machine: Machine, solver: Solver) -> tuple[pd.DataFrame, list[Finding]]:
-    """The pumps at the start temperature, and what to look at there."""
-    (cold,) = solve_at(solver, machine, machine.cycle, [machine.general["start_temperature"]])
-    table = cold_start_table(machine, machine.cycle, cold)
-    viscosity = float(cold.viscosity[0]) * 1e6
-    unsolved = unsolved_findings("Cold start", machine.cycle, cold)
-    return table, [*unsolved, *cold_findings(machine, table, viscosity)]
-
-
-def _hottest(around: Surroundings, cycle: Cycle, solver: Solver) -> tuple[Sample, list[Finding]]:
-    """The cycle at the highest oil temperature, and phases that were not solved there."""
-    (hot,) = solve_at(solver, around.machine, cycle, [around.machine.general["highest_oil_temperature"]])
-    return sample(around, cycle, hot), list(unsolved_findings("Cooler", cycle, hot))
 
 
 def _conditions(machine: Machine, balance: Balance | None, solver: Solver) -> tuple[float, str, Solution]:
