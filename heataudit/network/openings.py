@@ -22,7 +22,8 @@ HALVINGS = 4
 TRIES = 4
 NESTED_AT_MOST = 3
 DIFFERENCE = 1e-6
-TOLERANCES = {"xatol": 1e-15, "xrtol": 1e-13, "fatol": 1e-14, "frtol": 0.0}
+ROOT_SHARE = 0.03
+"""Share [-] of its tolerance to which a root is found."""
 
 
 class Openings:
@@ -112,7 +113,13 @@ class Openings:
             return self._excess(trial, self._settle(trial, rows[at]), rows[at])[first]
 
         low, high = np.full(rows.size, self.least[first]), np.ones(rows.size)
-        found = elementwise.find_root(excess, (low, high), args=(np.arange(rows.size),), tolerances=TOLERANCES)
+        tolerances = {
+            "xatol": 1e-14,
+            "xrtol": 1e-13,
+            "fatol": ROOT_SHARE * float(self.tolerance[first, 0]),
+            "frtol": 0.0,
+        }
+        found = elementwise.find_root(excess, (low, high), args=(np.arange(rows.size),), tolerances=tolerances)
         place = place.copy()
         place[first] = np.where(found.success, found.x, high)
         return self._nested(rest, place, rows)

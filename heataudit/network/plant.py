@@ -54,8 +54,7 @@ def counterbalance_estimates(machine: Machine, ports: Ports) -> dict[str, float]
     """Opening pressures [Pa] of the counterbalance valves that have none: 1.3 x the highest load at From."""
     blank = machine.valves[(machine.valves["kind"] == "counterbalance") & machine.valves["opening_pressure"].isna()]
     return {
-        valve.name: LOAD_SHARE * highest_load_pressure(machine, ports, ports.node(valve.from_))
-        for valve in rows(blank)
+        valve.name: LOAD_SHARE * highest_load_pressure(machine, ports, ports.node(valve.from_)) for valve in rows(blank)
     }
 
 
