@@ -23,7 +23,7 @@ STATES = np.array([state.name.lower() for state in State], object)
 
 
 def component_table(machine: Machine, solution: Solution, rows: slice = ALL) -> pd.DataFrame:
-    """Lines, valves, sections and galleries, and voids where there are any.
+    """Lines, valves, sections, galleries and voids.
 
     Parameters
     ----------
@@ -41,19 +41,17 @@ def component_table(machine: Machine, solution: Solution, rows: slice = ALL) -> 
         `velocity_m_s` (lines only, signed as the flow); phase by phase.
     """
     state = solution.components
-    is_void = np.array([kind == "void" for kind in state.kind], bool)
-    kept = np.flatnonzero(~is_void | (state.flow != 0).any(axis=1))
-    speeds = np.full((len(kept), len(range(*rows.indices(solution.phases)))), np.nan)
     lines = dict(zip(machine.lines["name"], machine.lines[["inside_diameter", "count"]].to_numpy(float), strict=True))
-    for row, k in enumerate(kept):
-        if state.kind[k] == "line":
-            bore, count = lines[state.name[k]]
-            speeds[row] = velocity(state.flow[k, rows], bore, count)
+    flow = state.flow[:, rows]
+    speeds = np.full_like(flow, np.nan)
+    for k, (name, kind) in enumerate(zip(state.name, state.kind, strict=True)):
+        if kind == "line":
+            speeds[k] = velocity(flow[k], *lines[name])
     wide = {
-        "flow_L_min": state.flow[kept][:, rows] / L_MIN, "drop_bar": state.drop[kept][:, rows] / BAR,
-        "heat_kW": state.heat[kept][:, rows] / 1e3, "velocity_m_s": speeds,
+        "flow_L_min": flow / L_MIN, "drop_bar": state.drop[:, rows] / BAR, "heat_kW": state.heat[:, rows] / 1e3,
+        "velocity_m_s": speeds,
     }  # fmt: skip
-    return _long(machine, rows, {"component": _of(state.name, kept), "kind": _of(state.kind, kept)}, wide)
+    return _long(machine, rows, {"component": state.name, "kind": state.kind}, wide)
 
 
 def pump_table(machine: Machine, solution: Solution, rows: slice = ALL) -> pd.DataFrame:
@@ -138,10 +136,6 @@ def port_table(machine: Machine, solution: Solution, rows: slice = ALL) -> pd.Da
     labels = tuple(label for node in solution.ports.nodes for label in node)
     node = np.repeat(np.arange(len(solution.ports)), [len(labels) for labels in solution.ports.nodes])
     return _long(machine, rows, {"port": labels}, {"pressure_bar": solution.pressure[node][:, rows] / BAR})
-
-
-def _of(words: tuple[str, ...], kept: Any) -> tuple[str, ...]:
-    return tuple(words[k] for k in kept)
 
 
 def _long(

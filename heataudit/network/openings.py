@@ -19,7 +19,7 @@ from heataudit.network.unknowns import Look, Trial
 
 NEWTON_STEPS = 8
 HALVINGS = 4
-TRIES = 4
+TRIES = 10
 NESTED_AT_MOST = 3
 DIFFERENCE = 1e-6
 ROOT_SHARE = 0.03

@@ -6,7 +6,7 @@ from collections.abc import Iterator
 
 from heataudit.audit.model import Audit
 
-CELLS = 200_000
+CELLS = 100_000
 """Phases x components written at a time."""
 
 

@@ -15,7 +15,7 @@ from rich.text import Text
 from heataudit.audit.model import Audit
 from heataudit.report.quantities import System, quantity, restate
 from heataudit.report.safe import printable
-from heataudit.report.words import GROUP_NAMES, findings_in_order, oil_sentence, ranked_groups, share_text
+from heataudit.report.words import GROUP_NAMES, finding_text, findings_in_order, oil_sentence, ranked_groups, share_text
 
 WIDTH = 80
 STYLES = {"danger": "bold red", "warning": "yellow", "note": ""}
@@ -48,8 +48,7 @@ def print_summary(audit: Audit, system: System, file: IO[str] | None = None) -> 
         console.print()
     for finding in findings[:MOST_FINDINGS]:
         text = Text(f"{finding.severity.capitalize()}: ", style=STYLES[finding.severity])
-        place = f"{finding.where}: " if finding.where not in finding.text else ""
-        text.append(place + restate(finding.text, system, (finding.where, finding.phase)), style="default")
+        text.append(finding_text(finding, system), style="default")
         console.print(text)
     if len(findings) > MOST_FINDINGS:
         console.print(Text(f"... and {len(findings) - MOST_FINDINGS} more findings in the report."))
@@ -73,10 +72,11 @@ def _numbers(audit: Audit, system: System) -> Iterable[str]:
         f"{quantity(cycle.shaft_energy_kJ, 'kJ', system)} at the pump shafts, "
         f"{quantity(cycle.useful_energy_kJ, 'kJ', system)} useful ({share_text(cycle.efficiency)})"
     )
-    money = "" if annual.energy_cost is None else f", {quantity(annual.energy_cost, '', system)} {annual.currency}"
+    bill = f"; energy bill {quantity(annual.energy_cost, '', system)} {annual.currency}"
     yield (
         f"Heat: {quantity(cycle.mean_heat_kW, 'kW', system)} mean, {quantity(cycle.peak_heat_kW, 'kW', system)} peak; "
-        f"a year: {quantity(annual.loss_kWh, 'kWh', system)} lost{money and ' of a bill of' + money[1:]}"
+        f"a year: {quantity(annual.loss_kWh, 'kWh', system)} lost"
+        f"{'' if annual.energy_cost is None else bill}"
     )
 
 

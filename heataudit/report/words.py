@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from heataudit.audit.model import GROUPS, Audit, Finding
-from heataudit.report.quantities import System, quantity
+from heataudit.report.quantities import System, quantity, restate
 
 GROUP_NAMES = {
     "load": "Useful work", "pump": "Pumps", "idle": "Idling", "bypass": "Bypass", "metering": "Metering",
@@ -61,6 +61,20 @@ def findings_in_order(audit: Audit) -> list[Finding]:
         The answers.
     """
     return sorted(audit.findings, key=lambda finding: SEVERITIES.index(finding.severity))
+
+
+def finding_text(finding: Finding, system: System) -> str:
+    """A finding as a sentence that names its place.
+
+    Parameters
+    ----------
+    finding
+        One of the audit's.
+    system
+        "SI" or "US".
+    """
+    place = "" if finding.where.casefold() in finding.text.casefold() else f"{finding.where}: "
+    return place + restate(finding.text, system, (finding.where, finding.phase))
 
 
 def share_text(share: float | None) -> str:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import shutil
 from collections.abc import Callable, Iterator
-from contextlib import contextmanager
+from contextlib import contextmanager, suppress
 from pathlib import Path
 from uuid import uuid4
 
@@ -108,8 +108,9 @@ def _aside(target: Path) -> Iterator[Path]:
         yield aside
     except BaseException:
         shutil.rmtree(aside, ignore_errors=True)
-        for parent in made:
-            parent.rmdir()
+        with suppress(OSError):
+            for parent in made:
+                parent.rmdir()
         raise
     shutil.rmtree(aside, ignore_errors=True)
 

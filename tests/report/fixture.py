@@ -68,14 +68,19 @@ def sheets(phases: int = 6, lines: int = 4, prefix: str = "") -> Sheets:
             *[[f"{prefix}{NAMES[k % 6]}" + (f" {k // 6 + 1}" if k >= 6 else ""), 2 + 3 * (k % 4), 1 + k % 2, *moves[k]]
               for k in range(phases)],
         ],
-        "Coolers": [
-            ["Cooler", "Kind", "Oil flow [L/min]", "Capacity [kW/K]", "Pressure drop [bar]", "Fan power [kW]", "Price"],
-            [f"{prefix}Small fan", "air", 30, 0.1, 0.5, 0.2, 500],
-            [f"{prefix}Small fan", "air", 80, 0.14, 1.5, 0.2, 500],
-            [f"{prefix}Large fan", "air", 40, 0.3, 0.4, 0.5, 900],
-            [f"{prefix}Large fan", "air", 120, 0.5, 1.4, 0.5, 900],
-        ],
+        "Coolers": _coolers(prefix),
     }  # fmt: skip
+
+
+def _coolers(prefix: str) -> list[list[Any]]:
+    """Two curves of two points."""
+    return [
+        ["Cooler", "Kind", "Oil flow [L/min]", "Capacity [kW/K]", "Pressure drop [bar]", "Fan power [kW]", "Price"],
+        [f"{prefix}Small fan", "air", 30, 0.1, 0.5, 0.2, 500],
+        [f"{prefix}Small fan", "air", 80, 0.14, 1.5, 0.2, 500],
+        [f"{prefix}Large fan", "air", 40, 0.3, 0.4, 0.5, 900],
+        [f"{prefix}Large fan", "air", 120, 0.5, 1.4, 0.5, 900],
+    ]
 
 
 @cache

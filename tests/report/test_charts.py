@@ -10,6 +10,7 @@ import pandas as pd
 import pytest
 from PIL import Image
 
+from heataudit.report import charts
 from heataudit.report.charts import CHARTS, chart_files, write_charts
 from heataudit.report.charts.boxes import clipped, overlaps, text_boxes
 from heataudit.report.charts.energy_flow import streams
@@ -52,14 +53,17 @@ CASES = {
 }  # fmt: skip
 
 
-@pytest.fixture(scope="module", params=CASES)
-def made(request):
-    return CASES[request.param]()
+@pytest.fixture(scope="module", params=[(case, "SI") for case in CASES] + [("usual", "US"), ("long names", "US")],
+                ids=" ".join)  # fmt: skip
+def shown(request):
+    """An audit and the units of its report."""
+    case, system = request.param
+    return CASES[case](), system
 
 
 @pytest.mark.parametrize("name", CHARTS)
-@pytest.mark.parametrize("system", ["SI", "US"])
-def test_no_text_overlaps_another_or_is_cut_off(made, name, system):
+def test_no_text_overlaps_another_or_is_cut_off(shown, name):
+    made, system = shown
     with chart_style():
         figure = import_module(f"heataudit.report.charts.{name.replace('-', '_')}").draw(made, system)
         if figure is not None:
@@ -86,6 +90,15 @@ def test_files_are_pictures_and_drawings(tmp_path):
         assert image.info["dpi"] == pytest.approx((200, 200), rel=1e-3)
         assert image.width == 1500  # 7.5 in at 200 dpi
     assert (tmp_path / "warm-up.svg").read_text(encoding="utf-8").lstrip().startswith("<?xml")
+
+
+def test_same_audit_same_pictures(tmp_path, monkeypatch):
+    monkeypatch.setattr(charts, "CHARTS", ("energy-flow",))
+    for name in ("one", "two"):
+        (tmp_path / name).mkdir()
+        write_charts(audit(), tmp_path / name, "SI")
+    for name in ("energy-flow.png", "energy-flow.svg"):
+        assert (tmp_path / "one" / name).read_bytes() == (tmp_path / "two" / name).read_bytes()
 
 
 def test_what_comes_in_goes_out():

@@ -54,9 +54,7 @@ def draw(audit: Audit, system: System) -> Figure | None:
     axes.axhspan(0, float(limit), color=WITHIN, alpha=0.15, linewidth=0)
     limit_line(axes, float(limit), f"needed {quantity(needed, 'kW/K', system)}", vertical=False)
     if cooler.oil_flow_L_min is not None:
-        axes.plot(
-            float(convert(cooler.oil_flow_L_min, "L/min", system)[0]), float(limit), "D", color=INK, markersize=6
-        )
+        axes.plot(float(convert(cooler.oil_flow_L_min, "L/min", system)[0]), float(limit), "D", color=INK, markersize=6)
     axes.set_xlabel(f"Oil flow [{convert(0.0, 'L/min', system)[1]}]")
     axes.set_ylabel(f"Capacity [{unit}]")
     return figure

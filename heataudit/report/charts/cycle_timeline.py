@@ -34,7 +34,7 @@ NAME_LENGTH = 1.35
 """Longest a phase's name may be when it stands upright [in]."""
 
 MOST_PUMPS = len(PUMP_STYLES)
-MOST_STEPS = 1500
+MOST_STEPS = 400
 """Phases beyond which several are drawn as one: no more could be seen."""
 
 LEFT, RIGHT_NAMES = 0.75, 1.25
@@ -127,11 +127,12 @@ def _draw_panel(axes: Axes, edges: Floats, curves: list[Curve]) -> None:
     highest = max(float(np.nanmax(curve.values)) for curve in curves)
     axes.set_ylim(lowest * 1.06, nice_top(highest))
     axes.yaxis.set_major_locator(_few_ticks())
+    width = 1.4 if len(edges) <= 100 else 0.8
     for curve in curves:
         coarse, low, mean, high = _thinned(edges, curve.values)
         if len(coarse) < len(edges):
             axes.fill_between(coarse[:-1], low, high, step="post", color=curve.colour, alpha=0.25, linewidth=0)
-        axes.stairs(mean, coarse, baseline=None, color=curve.colour, linestyle=curve.style, linewidth=1.4)
+        axes.stairs(mean, coarse, baseline=None, color=curve.colour, linestyle=curve.style, linewidth=width)
     _name_curves(axes, [curve.name for curve in curves], curves)
 
 

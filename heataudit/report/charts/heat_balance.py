@@ -10,7 +10,7 @@ from scipy.interpolate import PchipInterpolator
 from heataudit.audit.model import Audit
 from heataudit.report.charts.palette import COOLER, HEAT, INK, TANK
 from heataudit.report.charts.style import NORMAL, nice_top, titled_figure
-from heataudit.report.charts.temperatures import Curve, limit_line, plot
+from heataudit.report.charts.temperatures import BEHIND, Curve, limit_line, plot
 from heataudit.report.quantities import System, convert, quantity
 from heataudit.report.words import oil_sentence
 
@@ -52,9 +52,7 @@ def draw(audit: Audit, system: System) -> Figure:
     if cooled:
         curves.append(Curve("Tank and existing cooler", *shown(fine, both), COOLER))  # type: ignore[arg-type]
     ambient = quantity(audit.conditions.ambient_temperature_C, "°C", system)
-    figure, top = titled_figure(
-        oil_sentence(audit, system), f"Means over the duty cycle at {ambient} ambient.", BODY
-    )
+    figure, top = titled_figure(oil_sentence(audit, system), f"Means over the duty cycle at {ambient} ambient.", BODY)
     high = nice_top(1.1 * max(float(curves[0].y.max()), 0.0))
     low = min(0.0, float(curves[0].y.min()))
     axes = plot(figure, top, curves, (float(curves[0].x[0]), float(curves[0].x[-1]), low, high))
@@ -76,5 +74,5 @@ def _mark(axes: Axes, point: tuple[float, float], text: str, limit: float) -> No
     axes.plot(*point, "o", color=INK, markersize=6, zorder=5)
     axes.annotate(
         text, point, xytext=(6 * side, -6), textcoords="offset points", ha="left" if side > 0 else "right", va="top",
-        fontsize=NORMAL, fontweight="bold",
+        fontsize=NORMAL, fontweight="bold", bbox=BEHIND,
     )  # fmt: skip

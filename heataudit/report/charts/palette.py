@@ -8,7 +8,7 @@ from __future__ import annotations
 
 GROUP_COLOURS = {
     "load": "#017159", "pump": "#3B398F", "idle": "#A7C4E6", "bypass": "#309AF5", "metering": "#EA9A02",
-    "lines": "#F4D574", "overflow": "#D83915", "lowering": "#634B79", "actuators": "#788E58", "other": "#DADCE0",
+    "lines": "#F4D574", "overflow": "#D83915", "lowering": "#634B79", "actuators": "#788E58", "other": "#35302B",
 }  # fmt: skip
 """Useful work and the loss groups."""
 
@@ -24,10 +24,10 @@ BAND = "#EEF1F3"
 HEAT = "#9C1F4D"
 """Heat that comes in, oil without a cooler."""
 
-TANK = "#7A8791"
+TANK = "#8C979F"
 """Heat that the tank gives off."""
 
-COOLER = "#00809E"
+COOLER = "#006C9E"
 """Heat that tank and cooler give off, oil with the cooler."""
 
 WITHIN, BEYOND = "#8FA3B0", HEAT
@@ -41,9 +41,19 @@ def on(colour: str) -> str:
     """Colour of text that is readable on a colour.
 
     >>> on("#F4D574"), on("#3B398F")
-    ('#1F2A33', '#FFFFFF')
+    ('#0B1117', '#FFFFFF')
     """
-    return INK if luminance(colour) > 0.3 else "#FFFFFF"
+    return max(("#0B1117", "#FFFFFF"), key=lambda text: contrast(text, colour))
+
+
+def contrast(first: str, second: str) -> float:
+    """Contrast ratio [-] of two colours (WCAG 2.1, 1.4.3).
+
+    >>> round(contrast("#FFFFFF", "#000000"), 6)
+    21.0
+    """
+    darker, lighter = sorted((luminance(first), luminance(second)))
+    return (lighter + 0.05) / (darker + 0.05)
 
 
 def luminance(colour: str) -> float:

@@ -110,7 +110,10 @@ def text_size(text: str, size: float = NORMAL, bold: bool = False) -> tuple[floa
 
 
 def wrap(text: str, width: float, size: float = NORMAL, bold: bool = False, lines: int = 2) -> str:
-    """A text in lines no wider than a width [in]; what goes beyond the last line gives way to an ellipsis."""
+    """A text in lines no wider than a width [in]; of what is too long for the last one the middle goes.
+
+    Names in a workbook often begin alike, so their ends are kept.
+    """
     unbroken = re.sub(r"(?<=[\d–]) (?=[%°a-zA-Z])", "\N{NO-BREAK SPACE}", printable(text))
     words, found = unbroken.split(" "), [""]
     for word in words:
@@ -128,9 +131,12 @@ def _cut(line: str, width: float, size: float, bold: bool) -> str:
     if text_size(line, size, bold)[0] <= width:
         return line
     kept = len(line)
-    while kept > 1 and text_size(line[:kept].rstrip() + "…", size, bold)[0] > width:
+    shorter = line
+    while kept > 2 and text_size(shorter, size, bold)[0] > width:
         kept -= 1
-    return line[:kept].rstrip() + "…"
+        start = kept * 2 // 5
+        shorter = f"{line[:start].rstrip()}…{line[len(line) - (kept - start) :].lstrip()}"
+    return shorter
 
 
 def spread(wanted: Sequence[float], sizes: Sequence[float], low: float, high: float) -> list[float]:

@@ -17,6 +17,9 @@ if TYPE_CHECKING:
 
 LEFT, NAMES, BOTTOM = 0.75, 1.6, 0.55
 
+BEHIND = {"facecolor": "white", "edgecolor": "none", "alpha": 0.8, "pad": 0.5}
+"""What keeps curves away from a text that lies on them."""
+
 
 class Curve(NamedTuple):
     """A curve with its name, colour and line style."""
@@ -58,10 +61,10 @@ def limit_line(axes: Axes, value: float, text: str, vertical: bool) -> None:
         left = value > low + 0.6 * (high - low)
         axes.annotate(
             text, (value, 1), xycoords=("data", "axes fraction"), xytext=(-4 if left else 4, -2),
-            textcoords="offset points", ha="right" if left else "left", va="top", fontsize=SMALL,
+            textcoords="offset points", ha="right" if left else "left", va="top", fontsize=SMALL, bbox=BEHIND,
         )  # fmt: skip
     else:
         axes.annotate(
             text, (1, value), xycoords=("axes fraction", "data"), xytext=(-2, 3), textcoords="offset points",
-            ha="right", va="bottom", fontsize=SMALL,
+            ha="right", va="bottom", fontsize=SMALL, bbox=BEHIND,
         )  # fmt: skip

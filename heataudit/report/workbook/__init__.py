@@ -9,7 +9,7 @@ from heataudit.report.quantities import System
 
 ORDER = (
     "Answer", "Findings", "Charts", "Losses", "Loss groups", "Phases", "Pumps", "Actuators", "Lines",
-    "Valves and sections", "Cooler", "What if", "Inputs used", "Method and cautions",
+    "Valves and sections", "Drives and cold start", "Cooler", "What if", "Inputs used", "Method and cautions",
 )  # fmt: skip
 """Sheets in order."""
 
@@ -34,6 +34,7 @@ def write_workbook(audit: Audit, path: Path, pictures: dict[str, Path], system: 
     from heataudit.report.workbook.answer import write_answer
     from heataudit.report.workbook.charts import write_charts_sheet
     from heataudit.report.workbook.cooler import write_cooler
+    from heataudit.report.workbook.drives import write_drives
     from heataudit.report.workbook.findings import write_findings
     from heataudit.report.workbook.inputs import write_inputs
     from heataudit.report.workbook.losses import write_losses
@@ -50,7 +51,7 @@ def write_workbook(audit: Audit, path: Path, pictures: dict[str, Path], system: 
     report = Report(book, audit, system, pictures)
     for write in (
         write_answer, write_charts_sheet, write_lines, write_components, write_phases, write_losses, write_cooler,
-        write_what_if, write_inputs, write_method, write_findings,
+        write_drives, write_what_if, write_inputs, write_method, write_findings,
     ):  # fmt: skip
         write(report)
     book._sheets.sort(key=lambda sheet: ORDER.index(sheet.title))  # type: ignore[attr-defined]

@@ -8,8 +8,8 @@ from openpyxl.worksheet.worksheet import Worksheet
 from heataudit.audit.model import Audit, Finding
 from heataudit.report.charts.palette import BAND, HEAT, INK, QUIET
 from heataudit.report.quantities import System, grouped, quantity, restate
-from heataudit.report.words import GROUP_NAMES, findings_in_order, oil_sentence, ranked_groups, share_text
-from heataudit.report.workbook.page import LINE, Report, colour_of, paragraph, picture, put, set_widths
+from heataudit.report.words import GROUP_NAMES, finding_text, findings_in_order, oil_sentence, ranked_groups, share_text
+from heataudit.report.workbook.page import LINE, Look, Report, colour_of, paragraph, picture, put, set_widths
 
 COLUMNS, COLUMN_WIDTH, PICTURE_WIDTH = 6, 16.0, 7.0
 MOST_FINDINGS, MOST_LOSSES = 4, 5
@@ -90,8 +90,8 @@ def _key_numbers(sheet: Worksheet, row: int, audit: Audit, system: System) -> in
     hot = audit.thermal.equilibrium_C is None or audit.thermal.equilibrium_C > audit.thermal.highest_temperature_C
     for column, (number, words) in enumerate(key_numbers(audit, system), 1):
         colour = HEAT if column == 5 and hot else INK
-        top = put(sheet, row, column, number, bold=True, size=13, colour=colour, across="center")
-        low = put(sheet, row + 1, column, words, size=8, colour=QUIET, wrapped=True, across="center")
+        top = put(sheet, row, column, number, Look(bold=True, size=13, colour=colour, across="center"))
+        low = put(sheet, row + 1, column, words, Look(size=8, colour=QUIET, wrapped=True, across="center"))
         for cell in (top, low):
             cell.fill = PatternFill("solid", fgColor=colour_of(BAND))
         top.border = low.border = Border(left=Side(style="medium", color="FFFFFF"))
@@ -101,7 +101,7 @@ def _key_numbers(sheet: Worksheet, row: int, audit: Audit, system: System) -> in
 
 
 def _question(sheet: Worksheet, row: int, text: str) -> int:
-    put(sheet, row, 1, text, bold=True, size=12)
+    put(sheet, row, 1, text, Look(bold=True, size=12))
     for column in range(1, COLUMNS + 1):
         sheet.cell(row, column).border = Border(bottom=Side(style="thin", color=colour_of(INK)))
     sheet.row_dimensions[row].height = 18
@@ -127,16 +127,16 @@ def _top_losses(sheet: Worksheet, row: int, report: Report) -> int:
     money = audit.annual.price_per_kWh_loss is not None
     heads = ["Largest losses", "", "Kind", "Of the heat", "kWh a year", f"{audit.annual.currency} a year"]
     for column, head in enumerate(heads if money else heads[:-1], 1):
-        cell = put(sheet, row, column, head, bold=True, size=9, across="right" if column > 3 else None)
+        cell = put(sheet, row, column, head, Look(bold=True, size=9, across="right" if column > 3 else None))
         cell.border = Border(bottom=Side(style="hair", color=colour_of(INK)))
     for number, loss in enumerate(top.to_dict("records"), row + 1):
-        put(sheet, number, 1, str(loss["component"]), size=9)
+        put(sheet, number, 1, str(loss["component"]), Look(size=9))
         sheet.merge_cells(start_row=number, start_column=1, end_row=number, end_column=2)
-        put(sheet, number, 3, GROUP_NAMES[loss["group"]], size=9)
-        put(sheet, number, 4, share_text(float(loss["share"])), size=9, across="right")
-        put(sheet, number, 5, grouped(float(loss["annual_kWh"])), size=9, across="right")
+        put(sheet, number, 3, GROUP_NAMES[loss["group"]], Look(size=9))
+        put(sheet, number, 4, share_text(float(loss["share"])), Look(size=9, across="right"))
+        put(sheet, number, 5, grouped(float(loss["annual_kWh"])), Look(size=9, across="right"))
         if money:
-            put(sheet, number, 6, grouped(float(loss["annual_cost"])), size=9, across="right")
+            put(sheet, number, 6, grouped(float(loss["annual_cost"])), Look(size=9, across="right"))
     return row + 1 + len(top)
 
 
@@ -161,12 +161,10 @@ def _top_findings(sheet: Worksheet, row: int, audit: Audit, system: System) -> i
     if not findings:
         return paragraph(sheet, row, "Nothing was found that calls for mending.", COLUMNS) + 1
     for finding in findings[:MOST_FINDINGS]:
-        place = "" if finding.where in finding.text else f"{finding.where}: "
-        text = place + restate(finding.text, system, (finding.where, finding.phase))
-        row = paragraph(sheet, row, f"• {text}", COLUMNS, size=9)
+        row = paragraph(sheet, row, f"• {finding_text(finding, system)}", COLUMNS, size=9)
     if len(findings) > MOST_FINDINGS:
         more = f"{len(findings) - MOST_FINDINGS} more on the sheet Findings."
-        put(sheet, row, 1, more, size=9, colour=QUIET)
+        put(sheet, row, 1, more, Look(size=9, colour=QUIET))
         row += 1
     return row + 1
 

@@ -1,4 +1,4 @@
-"""Sheet Charts: the pictures, two to a page."""
+"""Sheet Charts: the pictures, as many to a page as it holds."""
 
 from __future__ import annotations
 
@@ -6,10 +6,10 @@ from openpyxl.worksheet.pagebreak import Break
 
 from heataudit.report.workbook.page import ROW, Report, picture, set_widths
 
-PICTURE_WIDTH, PAGE = 5.7, 10.2
+PICTURE_WIDTH, PAGE = 6.8, 10.2
 """Width of a picture and height of a page [in]."""
 
-HERE = ("losses-ranked", "cycle-timeline", "pressure-flow-rectangles", "line-velocities")
+HERE = ("losses-ranked", "line-velocities", "cycle-timeline", "pressure-flow-rectangles")
 """Charts on this sheet; the others stand on Answer and Cooler."""
 
 

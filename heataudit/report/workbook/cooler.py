@@ -2,13 +2,15 @@
 
 from __future__ import annotations
 
+from openpyxl.worksheet.pagebreak import Break
 from openpyxl.worksheet.worksheet import Worksheet
 
 from heataudit.audit.model import Audit
 from heataudit.report.charts.warm_up import duration_text
 from heataudit.report.quantities import System, quantity, restate
 from heataudit.report.safe import printable
-from heataudit.report.workbook.page import CHARACTER, Field, Report, paragraph, picture, put, width_of, write_table
+from heataudit.report.workbook.page import CHARACTER, Look, Report, paragraph, picture, put, width_of
+from heataudit.report.workbook.table import Field, Plan, write_table
 
 COLUMNS = 10
 FACTS_WIDTH = 30.0
@@ -36,15 +38,16 @@ def write_cooler(report: Report) -> None:
     facts = cooler_facts(audit, system)
     start = 5 + len(facts)
     sheet.column_dimensions["A"].width = FACTS_WIDTH
-    put(sheet, start + 1, 1, "Coolers to choose from, the best first", bold=True, size=11)
+    put(sheet, start + 1, 1, "Coolers to choose from, the best first", Look(bold=True, size=11))
     shown = options.assign(remark=remarks, oil_flow_L_min=_flows(audit, system))
     row = write_table(
-        report, sheet, start + 2, shown, fields, name="CoolersToChooseFrom", freeze=False, places="cooler"
+        report, sheet, start + 2, shown, Plan("CoolersToChooseFrom", fields, freeze=False, places="cooler")
     )
     paragraph(sheet, 2, restate(audit.cooler.verdict, system, list(options["cooler"])), COLUMNS, bold=True)
     _write_facts(sheet, 4, facts)
     report.places.setdefault("Oil", (sheet.title, 4))
     report.places.setdefault("Cooler", (sheet.title, 4))
+    sheet.row_breaks.append(Break(id=row - 1))
     half = sum(width_of(sheet, column) for column in range(1, COLUMNS + 1)) * CHARACTER / 2
     picture(report, sheet, row, "warm-up", half - 0.1, left=half)
     row = picture(report, sheet, row, "heat-balance", half - 0.1)
@@ -111,5 +114,5 @@ def _percent(value: float | None) -> str:
 def _write_facts(sheet: Worksheet, row: int, facts: list[tuple[str, str, str]]) -> None:
     for number, (name, value, remark) in enumerate(facts, row):
         put(sheet, number, 1, name)
-        put(sheet, number, 2, value, bold=True)
+        put(sheet, number, 2, value, Look(bold=True))
         put(sheet, number, 4, remark)

@@ -8,7 +8,8 @@ from openpyxl.styles import Font
 from heataudit.report.charts.palette import HEAT
 from heataudit.report.quantities import restate
 from heataudit.report.words import findings_in_order
-from heataudit.report.workbook.page import FONT, Field, Report, colour_of, put, write_table
+from heataudit.report.workbook.page import FONT, Report, colour_of, put
+from heataudit.report.workbook.table import Field, Plan, write_table
 
 TOPICS = {
     "relief-flowing": "Oil over a relief valve", "line-velocity": "Fast oil in a line",
@@ -46,7 +47,7 @@ def write_findings(report: Report) -> None:
         Field("text", "What, and what helps"),
     ]  # fmt: skip
     sheet.column_dimensions["E"].width = 90
-    write_table(report, sheet, 4, table, fields, name="FindingsOfAudit")
+    write_table(report, sheet, 4, table, Plan("FindingsOfAudit", fields))
     for row, finding in enumerate(found, 5):
         for column, name in ((3, finding.where), (4, finding.phase)):
             place = report.places.get(name)

@@ -7,7 +7,8 @@ import pandas as pd
 from heataudit.audit.model import Audit
 from heataudit.machine.tables import TABLES
 from heataudit.report.quantities import System, restate
-from heataudit.report.workbook.page import Field, Report, write_table
+from heataudit.report.workbook.page import Report
+from heataudit.report.workbook.table import Field, Plan, write_table
 
 
 def write_inputs(report: Report) -> None:
@@ -30,7 +31,7 @@ def write_inputs(report: Report) -> None:
         Field("source", "Source"), Field("reason", "Reason of a default"),
         Field("plus_minus", "Plus-minus of an estimate", unit="%"),
     ]  # fmt: skip
-    write_table(report, sheet, 4, table, fields, name="InputsUsed")
+    write_table(report, sheet, 4, table, Plan("InputsUsed", fields))
 
 
 def input_table(audit: Audit, system: System) -> pd.DataFrame:

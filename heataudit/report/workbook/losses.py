@@ -8,7 +8,8 @@ from heataudit.audit.model import GROUPS, Audit
 from heataudit.report.quantities import quantity
 from heataudit.report.safe import printable
 from heataudit.report.words import GROUP_MEANINGS, GROUP_NAMES
-from heataudit.report.workbook.page import Field, Report, put, write_table
+from heataudit.report.workbook.page import Look, Report, put
+from heataudit.report.workbook.table import Field, Plan, write_table
 
 
 def write_losses(report: Report) -> None:
@@ -29,17 +30,17 @@ def write_losses(report: Report) -> None:
         Field("heat_kJ", "Heat in a cycle", bar=True), Field("share", "Of the heat", percent=True),
         Field("annual_kWh", "Heat in a year"), *money,
     ]  # fmt: skip
-    write_table(report, sheet, 4, table, fields, name="LossesByComponent", places="component")
+    write_table(report, sheet, 4, table, Plan("LossesByComponent", fields, places="component"))
     groups = report.sheet("Loss groups", "Losses by kind", note)
     fields = [
         Field("group", "Kind of loss"), Field("meaning", "What stands in it"),
         Field("heat_kJ", "Heat in a cycle", bar=True), Field("share", "Of the heat", percent=True),
         Field("mean_kW", "Mean heat"), Field("annual_kWh", "Heat in a year"), *money,
     ]  # fmt: skip
-    row = write_table(report, groups, 4, group_table(audit), fields, name="LossesByKind")
+    row = write_table(report, groups, 4, group_table(audit), Plan("LossesByKind", fields))
     total = quantity(audit.cycle.heat_energy_kJ, "kJ", report.system)
     yearly = quantity(audit.annual.loss_kWh, "kWh", report.system)
-    put(groups, row, 1, f"All kinds together: {total} in a cycle, {yearly} in a year.", bold=True)
+    put(groups, row, 1, f"All kinds together: {total} in a cycle, {yearly} in a year.", Look(bold=True))
 
 
 def money_field(audit: Audit) -> list[Field]:

@@ -7,7 +7,7 @@ import numpy as np
 from heataudit.audit.model import Audit
 from heataudit.report.quantities import System, grouped, quantity, restate
 from heataudit.report.words import CAUTIONS
-from heataudit.report.workbook.page import Report, paragraph, put, set_widths
+from heataudit.report.workbook.page import Look, Report, paragraph, put, set_widths
 
 METHOD = (
     "Every phase of the duty cycle is solved as a network of pumps, lines, valves and actuators in a steady state: "
@@ -47,7 +47,7 @@ def write_method(report: Report) -> None:
         ("How good it is", quality(audit, system)),
         ("Where it comes from", provenance(audit)),
     ):
-        put(sheet, row, 1, heading, bold=True, size=12)
+        put(sheet, row, 1, heading, Look(bold=True, size=12))
         row += 1
         for text in texts:
             row = paragraph(sheet, row, f"• {text}", COLUMNS)
@@ -74,8 +74,8 @@ def quality(audit: Audit, system: System) -> list[str]:
         f"residual is {worst:.1e} of the pump flow or of {quantity(100.0, 'bar', system)}.",
         f"Bookkeeping error: power in and power out differ by {cycle.balance_error_kJ:.1e} kJ in a cycle of "
         f"{grouped(cycle.shaft_energy_kJ)} kJ shaft energy. That proves the sums, not the inputs.",
-        f"{estimates:,} inputs are estimates with the plus-minus on the sheet Inputs used; the answers can be no better "
-        "than they are. Measured pressures, flows and temperatures are the best check.",
+        f"{estimates:,} inputs are estimates with the plus-minus on the sheet Inputs used; the answers can be no "
+        "better than they are. Measured pressures, flows and temperatures are the best check.",
     ]  # fmt: skip
 
 

@@ -12,7 +12,8 @@ from heataudit.audit.figures import BAR, L_MIN
 from heataudit.audit.model import Audit
 from heataudit.report.charts.palette import BEYOND
 from heataudit.report.workbook.losses import money_field
-from heataudit.report.workbook.page import Field, Report, colour_of, write_table
+from heataudit.report.workbook.page import Report, colour_of
+from heataudit.report.workbook.table import Field, Plan, write_table
 
 
 def write_lines(report: Report) -> None:
@@ -40,7 +41,7 @@ def write_lines(report: Report) -> None:
         Field("drop_bar", "Drop"), Field("mean_heat_kW", "Mean heat"), Field("heat_kJ", "Heat in a cycle", bar=True),
         Field("annual_kWh", "Heat in a year"), *money_field(audit),
     ]  # fmt: skip
-    after = write_table(report, sheet, 4, table, fields, name="LinesOfMachine", places="line")
+    after = write_table(report, sheet, 4, table, Plan("LinesOfMachine", fields, places="line"))
     letter = get_column_letter([field.key for field in fields].index("over") + 1)
     font = Font(bold=True, color=colour_of(BEYOND))
     red = CellIsRule(operator="greaterThan", formula=["1"], font=font)  # type: ignore[no-untyped-call]
@@ -63,7 +64,9 @@ def write_components(report: Report) -> None:
         Field("heat_kJ", "Heat in a cycle", bar=True), Field("annual_kWh", "Heat in a year"),
         *money_field(report.audit),
     ]  # fmt: skip
-    write_table(report, sheet, 4, component_summary(report.audit), fields, name="ValvesAndSections", places="component")
+    write_table(
+        report, sheet, 4, component_summary(report.audit), Plan("ValvesAndSections", fields, places="component")
+    )
 
 
 def component_summary(audit: Audit) -> pd.DataFrame:

@@ -9,7 +9,8 @@ from numpy.typing import NDArray
 from heataudit.audit.model import GROUPS, Audit
 from heataudit.audit.tables import actuator_table, pump_table
 from heataudit.report.words import GROUP_NAMES
-from heataudit.report.workbook.page import Field, Report, write_table
+from heataudit.report.workbook.page import Report
+from heataudit.report.workbook.table import Field, Plan, write_table
 
 MOST_PHASES = 200
 """Phases that the report shows; phases.csv has all."""
@@ -54,7 +55,7 @@ def write_phases(report: Report) -> None:
     ]  # fmt: skip
     if (table["returned_power_kW"] != 0).any():
         fields.insert(6, Field("returned_power_kW", "Given back by loads"))
-    write_table(report, sheet, 4, table, fields, name="PhasesOfCycle", places="phase")
+    write_table(report, sheet, 4, table, Plan("PhasesOfCycle", fields, places="phase"))
     sheet.freeze_panes = "C5"
     _write_pumps(report, numbers, note)
     _write_actuators(report, numbers, note)
@@ -84,7 +85,7 @@ def _write_pumps(report: Report, numbers: NDArray[np.intp], note: str) -> None:
         Field("displacement_percent", "Displacement"), Field("shaft_power_kW", "Shaft power", bar=True),
         Field("heat_kW", "Heat"),
     ]  # fmt: skip
-    write_table(report, sheet, 4, table, fields, name="PumpsInPhases", places="component")
+    write_table(report, sheet, 4, table, Plan("PumpsInPhases", fields, places="component"))
 
 
 def _write_actuators(report: Report, numbers: NDArray[np.intp], note: str) -> None:
@@ -97,4 +98,4 @@ def _write_actuators(report: Report, numbers: NDArray[np.intp], note: str) -> No
         Field("power_kW", "Power on the load"), Field("heat_kW", "Heat"),
     ]  # fmt: skip
     used = [f for f in fields if table[f.key].notna().any()]
-    write_table(report, sheet, 4, table, used, name="ActuatorsInPhases", places="component")
+    write_table(report, sheet, 4, table, Plan("ActuatorsInPhases", used, places="component"))

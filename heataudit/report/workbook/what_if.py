@@ -10,9 +10,9 @@ from openpyxl.worksheet.worksheet import Worksheet
 from heataudit.audit.model import Audit
 from heataudit.machine.units import shown
 from heataudit.report.charts.palette import INK
-from heataudit.report.quantities import LIVE_FORMAT, System, convert
+from heataudit.report.quantities import System, convert
 from heataudit.report.safe import printable
-from heataudit.report.workbook.page import Report, colour_of, paragraph, put, put_formula, set_widths
+from heataudit.report.workbook.page import Look, Report, colour_of, paragraph, put, put_formula, set_widths
 
 INPUT_FILL = "FFF3CD"
 COLUMNS = 4
@@ -40,7 +40,7 @@ def write_what_if(report: Report) -> None:
     note = "Change a yellow cell; the results below it follow."
     sheet = report.sheet("What if", "What if?", note, landscape=False)
     set_widths(sheet, [40, 14, 14, 62])
-    put(sheet, 4, 1, "Cooler", bold=True, size=12)
+    put(sheet, 4, 1, "Cooler", Look(bold=True, size=12))
     row = _write(sheet, 5, cooler_lines(audit, system, 5))
     text = (
         "The machine's heat is kept as it was found at the highest oil temperature, the tank's heat follows the "
@@ -49,7 +49,7 @@ def write_what_if(report: Report) -> None:
     row = paragraph(sheet, row, text, COLUMNS, size=9)
     if audit.annual.drive_input_kWh is None and audit.annual.fuel_L is None:
         return
-    put(sheet, row + 1, 1, "Money", bold=True, size=12)
+    put(sheet, row + 1, 1, "Money", Look(bold=True, size=12))
     _write(sheet, row + 2, money_lines(audit, row + 2))
 
 
@@ -57,12 +57,12 @@ def _write(sheet: Worksheet, row: int, lines: list[Line]) -> int:
     """Rows one below the other; the row after them."""
     for number, line in enumerate(lines, row):
         put(sheet, number, 1, line.name)
-        put(sheet, number, 3, line.unit, across="center")
+        put(sheet, number, 3, line.unit, Look(across="center"))
         put(sheet, number, 4, line.remark)
         if isinstance(line.value, str):
-            cell = put_formula(sheet, number, 2, line.value, LIVE_FORMAT, bold=not line.changeable)
+            cell = put_formula(sheet, number, 2, line.value, Look(bold=not line.changeable))
         else:
-            cell = put(sheet, number, 2, line.value, across="right")
+            cell = put(sheet, number, 2, line.value, Look(across="right"))
         if line.changeable:
             edge = Side(style="thin", color=colour_of(INK))
             cell.fill = PatternFill("solid", fgColor=INPUT_FILL)
@@ -86,34 +86,38 @@ def cooler_lines(audit: Audit, system: System, row: int) -> list[Line]:
         Row of the sheet in which the first line stands.
     """
     cooler, thermal, state = audit.cooler, audit.thermal, audit.conditions
+    degree, per_degree, kilowatt = (shown(unit, system) for unit in ("K", "kW/K", "kW"))
     ambient, celsius = convert(state.design_ambient_temperature_C, "°C", system)
-    highest = float(convert(thermal.highest_temperature_C, "°C", system)[0])
-    heat, kilowatt = convert(cooler.design_heat_kW, "kW", system)
-    tank = float(convert(cooler.tank_at_design_kW, "kW", system)[0])
-    degree, per_degree = shown("K", system), shown("kW/K", system)
+    highest = convert(thermal.highest_temperature_C, "°C", system)[0]
     above = (cooler.oil_inlet_C - thermal.highest_temperature_C) * degree.factor
+    span = (thermal.highest_temperature_C - state.design_ambient_temperature_C) * degree.factor
+    per_kelvin = cooler.tank_at_design_kW * kilowatt.factor / span if span else 0.0
     follows = audit.machine.reservoir["cooler_coolant_temperature"] is None
     coolant = f"=B{row}" if follows else float(convert(cooler.coolant_inlet_C, "°C", system)[0])
     b = {name: f"B{row + k}" for k, name in enumerate((
-        "ambient", "highest", "reserve", "coolant", "heat", "tank", "required", "capacity", "reserved"
+        "ambient", "highest", "reserve", "coolant", "heat", "per_degree", "above", "tank", "required", "capacity",
+        "reserved", "factor",
     ))}  # fmt: skip
-    span = highest - float(ambient)
-    tank_formula = f"={tank!r}*({b['highest']}-{b['ambient']})/{span!r}" if abs(span) > 1e-9 else tank
-    factor = per_degree.factor / shown("kW", system).factor * degree.factor
-    inlet = f"({b['highest']}+{above!r}-{b['coolant']})"
-    capacity = f'=IF({inlet}>0,{b["required"]}*{factor!r}/{inlet},"no cooler can")'
-    kind = "as the design ambient" if follows else "given"
+    inlet = f"({b['highest']}+{b['above']}-{b['coolant']})"
+    factor = per_degree.factor / kilowatt.factor * degree.factor
+    in_unit = f"{b['required']}*{b['factor']}" if system == "US" else b["required"]
     return [
         Line("Design ambient temperature", round(float(ambient), 6), celsius, "hottest air expected", True),
-        Line("Highest oil temperature", round(highest, 6), celsius, "to be held", True),
+        Line("Highest oil temperature", round(float(highest), 6), celsius, "to be held", True),
         Line("Reserve", cooler.reserve_percent, "%", "for fouling", True),
-        Line("Coolant temperature", coolant, celsius, f"{kind}; a number may be typed in its place", True),
-        Line("Heat to be dealt with", float(heat), kilowatt, "as found by the audit"),
-        Line("Given off by the tank", tank_formula, kilowatt),
-        Line("To be taken away", f"=MAX(0,{b['heat']}-{b['tank']})", kilowatt),
-        Line("Capacity required", capacity, per_degree.unit, "per degree between oil inlet and coolant inlet"),
-        Line("Capacity with the reserve", f'=IF(ISNUMBER({b["capacity"]}),{b["capacity"]}*(1+{b["reserve"]}/100),'
-             f'{b["capacity"]})', per_degree.unit, "choose a cooler that has it"),
+        Line("Coolant temperature", coolant, celsius, "a number may be typed in its place" if follows else "", True),
+        Line("Heat to be dealt with", cooler.design_heat_kW * kilowatt.factor, kilowatt.unit, "as found by the audit"),
+        Line("Given off by the tank per degree", per_kelvin, f"{kilowatt.unit}/{degree.unit}", "as found by the audit"),
+        Line("Oil inlet of the cooler above the tank", above, degree.unit, "as found by the audit"),
+        Line("Given off by the tank", f"={b['per_degree']}*({b['highest']}-{b['ambient']})", kilowatt.unit),
+        Line("To be taken away", f"=MAX(0,{b['heat']}-{b['tank']})", kilowatt.unit),
+        Line("Capacity required", f'=IF({inlet}>0,{in_unit}/{inlet},"no cooler can")',
+             per_degree.unit, "per degree between oil inlet and coolant inlet"),
+        Line("Capacity with the reserve",
+             f"=IF(ISNUMBER({b['capacity']}),{b['capacity']}*(1+{b['reserve']}/100),{b['capacity']})",
+             per_degree.unit, "choose a cooler that has it"),
+        *([Line(f"{per_degree.unit} in one {kilowatt.unit} per {degree.unit}", factor, "", "for the units")]
+          if system == "US" else []),
     ]  # fmt: skip
 
 
@@ -142,5 +146,6 @@ def money_lines(audit: Audit, row: int) -> list[Line]:
         Line("Drive input in an hour", taken / annual.operating_hours, unit, "as found by the audit"),
         Line("Drive input in a year", f"=B{row}*B{row + 2}", unit),
         Line("Energy bill in a year", f"=B{row + 3}*B{row + 1}", currency),
-        Line("Of it for losses", f"=B{row + 4}*{lost!r}", currency, "in proportion to heat and shaft energy"),
+        Line("Share of the losses", 100 * lost, "%", "heat per shaft energy, as found by the audit"),
+        Line("Of the bill for losses", f"=B{row + 4}*B{row + 5}/100", currency),
     ]  # fmt: skip
