@@ -48,7 +48,8 @@ CASES = {
     "usual": audit, "one phase": lambda: audit(1), "forty phases": lambda: audit(40),
     "hundred lines": lambda: audit(6, 100), "long names": lambda: audit(12, 4, LONG),
     "odd names": lambda: audit(6, 4, "$x^2 \\frac{ <&> 油 "), "thousands of phases": lambda: audit(4000),
-    "with a cooler": lambda: audit(cooler_kW_K=0.08), "no loss": without_loss, "no balance": without_balance,
+    "with a cooler": lambda: audit(cooler_kW_K=0.08), "with a large cooler": lambda: audit(cooler_kW_K=2.0),
+    "no loss": without_loss, "no balance": without_balance,
     "uncoolable": uncoolable,
 }  # fmt: skip
 

@@ -19,6 +19,8 @@ if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
 BODY = 3.0
+ROOM = 0.15
+"""Share of the axis that a temperature written beside a point takes."""
 
 
 def draw(audit: Audit, system: System) -> Figure:
@@ -69,8 +71,10 @@ def draw(audit: Audit, system: System) -> Figure:
 
 
 def _mark(axes: Axes, point: tuple[float, float], text: str, limit: float) -> None:
-    """A crossing point with its temperature below, on the side away from the limit."""
-    side = 1 if point[0] >= limit else -1
+    """A crossing point with its temperature below, on the side away from the limit where there is room."""
+    low, high = axes.get_xlim()
+    left = point[0] < limit and point[0] > low + ROOM * (high - low)
+    side = -1 if left or point[0] > high - ROOM * (high - low) else 1
     axes.plot(*point, "o", color=INK, markersize=6, zorder=5)
     axes.annotate(
         text, point, xytext=(6 * side, -6), textcoords="offset points", ha="left" if side > 0 else "right", va="top",
