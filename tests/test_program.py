@@ -14,9 +14,10 @@ from tests.example_machines import EXAMPLES, MACHINES
 from tests.workbooks import Sheets, write
 
 OPPOSED = [
-    # p1 [bar], k1 [bar/(L/min)²], p2, k2, Q [L/min] -> Q1, Q2, p: two branches, each a constant opposing pressure and a
-    # quadratic resistance, in closed form: with d = p2 - p1 and S = sqrt(k1 k2 Q² + (k1 - k2) d) above Qc = sqrt(d / k1),
-    # Q1 = (d + k2 Q²) / (k2 Q + S), Q2 = (k1 Q² - d) / (k1 Q + S); below it all oil takes the first
+    # p1 [bar], k1 [bar/(L/min)²], p2, k2, Q [L/min] -> Q1, Q2, p: two branches, each a constant opposing pressure and
+    # a quadratic resistance, in closed form (standard theory of parallel flow): with d = p2 - p1 and
+    # S = sqrt(k1 k2 Q² + (k1 - k2) d), above Qc = sqrt(d / k1) Q1 = (d + k2 Q²) / (k2 Q + S) and
+    # Q2 = (k1 Q² - d) / (k1 Q + S); below it all oil takes the first
     (50, 0.02, 80, 0.01, 60), (40, 0.01, 100, 0.01, 100), (30, 0.004, 150, 0.004, 200), (60, 0.015, 96, 0.03, 40),
     (60, 0.015, 96, 0.03, 48.98979485566356), (60, 0.015, 96, 0.03, 50), (60, 0.015, 96, 0.03, 55),
     (0, 0.005, 0, 0.02, 90),
