@@ -17,6 +17,9 @@ from heataudit.network.unknowns import Look
 from heataudit.physics.constants import STANDARD_GRAVITY
 from heataudit.physics.pumps import loss_torque, rated_loss_torque, shaft_power, shaft_torque, viscosity_ratio
 
+NO_DELIVERY = 1e-9
+"""Delivered flow [-], as a share of the full one, that is none: a pump that only makes up for its slip."""
+
 LITTLE_FLOW = 1e-3
 """Flow [-], as a share of the pump flow, to which node balances are referred at the least."""
 
@@ -149,8 +152,10 @@ def _pump(pump: Any, plant: Plant, network: Network, found: _Found) -> dict[str,
     shaft = shaft + (charged[0] + charged[1]) * (0.0 if np.isnan(pump.charge_pressure) else pump.charge_pressure)
     hydraulic = outlet * (swept - slips[0] + charged[1]) - inlet * (swept + slips[1] - charged[0])
     hydraulic = hydraulic + drain * (slips[0] + slips[1])
+    delivered = swept - slips[0]
+    delivered = np.where(np.abs(delivered) < NO_DELIVERY * pumps.full_flow(pump, plant), 0.0, delivered)
     return {
-        "pressure": outlet, "inlet_pressure": inlet, "flow": swept - slips[0], "slip": slips[0] + slips[1],
+        "pressure": outlet, "inlet_pressure": inlet, "flow": delivered, "slip": slips[0] + slips[1],
         "speed": speed, "displacement": swept / (np.where(speed > 0, speed, 1.0) * pump.displacement),
         "setting": np.broadcast_to(pumps.setting(pump, plant), speed.shape), "shaft_power": shaft,
         "heat": shaft - hydraulic,
