@@ -163,8 +163,17 @@ def _missed(solved: Solved) -> Iterator[Finding]:
     state = solved.solution.actuators
     for k, (name, kind) in enumerate(zip(state.name, state.kind, strict=True)):
         speed, asked = state.speed[k], np.nan_to_num(state.asked_speed[k])
-        missed = np.isin(state.state[k], (State.MOVING, State.SLOW)) & (speed < asked * (1 - SPEED_SHORT))
+        moves = np.isin(state.state[k], (State.MOVING, State.SLOW))
+        missed = moves & (speed < asked * (1 - SPEED_SHORT))
+        outrun = moves & (asked > 0) & (speed > asked * (1 + SPEED_SHORT))
         factor, unit = (60.0, "rpm") if kind == "motor" else (1e3, "mm/s")
+        if outrun.any() and not missed.any():
+            yield from solved.note(
+                Place("speed-missed", "warning", name), outrun, speed / np.where(asked > 0, asked, np.inf),
+                "{name} is asked for {asked} {unit} and runs at {speed} {unit}: its load drives it faster than the "
+                "return holds it back. Throttle the return, or fit a counterbalance valve.",
+                asked=asked * factor, speed=speed * factor, unit=unit,
+            )  # fmt: skip
         yield from solved.note(
             Place("speed-missed", "warning", name), missed, 1.0 - speed / np.where(asked > 0, asked, np.inf),
             "{name} is asked for {asked} {unit} and reaches {speed} {unit}; the pumps deliver {flow} L/min in all. "

@@ -101,6 +101,14 @@ def test_a_speed_that_is_missed_by_more_than_a_percent() -> None:
     assert found(actuators(speed=np.array([[0.0995, 0.1, 0]]))) == []
 
 
+def test_a_load_that_outruns_the_asked_speed() -> None:
+    finding = only("speed-missed", actuators(speed=np.array([[0.15, 0.1, 0]])))
+    assert finding.text == (
+        "Ram is asked for 100 mm/s and runs at 150 mm/s: its load drives it faster than the return holds it back. "
+        "Throttle the return, or fit a counterbalance valve. In 1 of 3 phases (Down)."
+    )
+
+
 def test_oil_that_fails_to_follow_draws_a_void() -> None:
     finding = only("cavitation-risk", components(5, flow=[0, 3 * L_MIN, 1 * L_MIN]))
     assert (finding.severity, finding.where, finding.phase) == ("danger", "Ram.A", "Up")
