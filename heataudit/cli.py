@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import argparse
+import os
 import sys
 from collections.abc import Callable, Iterable, Iterator, Sequence
 from contextlib import contextmanager
@@ -12,7 +13,7 @@ from typing import TYPE_CHECKING, Any
 if TYPE_CHECKING:
     from heataudit.machine import Machine, WorkbookError
 
-DONE, WORKBOOK_ERRORS, WRONG_COMMAND, UNSOUND, INTERRUPTED = 0, 1, 2, 3, 130
+DONE, WORKBOOK_ERRORS, WRONG_COMMAND, UNSOUND, INTERRUPTED, UNREAD = 0, 1, 2, 3, 130, 141
 
 EPILOG = """exit codes: 0 done; 1 the workbook has errors; 2 wrong command line, a file that is missing or cannot be
 written, or results that are there already; 3 the audit is written, but a phase was not solved or a balance is off"""
@@ -35,13 +36,18 @@ def main(arguments: Sequence[str] | None = None) -> int:
             stream.reconfigure(errors="replace")
     options = _parser().parse_args(arguments)
     try:
-        return int(options.command(options))
+        code = int(options.command(options))
+        sys.stdout.flush()
+        return code
     except _Refused as refused:
         return _complain(str(refused), WRONG_COMMAND)
+    except BrokenPipeError:  # whoever read the output has stopped; what is left of it goes nowhere
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        return UNREAD
     except OSError as error:
         return _complain(_os_text(error), WRONG_COMMAND)
     except KeyboardInterrupt:
-        return _complain("stopped; nothing was written", INTERRUPTED)
+        return _complain("stopped", INTERRUPTED)
 
 
 def _parser() -> argparse.ArgumentParser:
@@ -135,6 +141,8 @@ def _run(options: argparse.Namespace) -> int:
 
 def _must_exist(options: argparse.Namespace) -> None:
     for path in (options.file, options.cycle):
+        if path is not None and path.is_dir():
+            raise _Refused(f"{path}: that is a folder; give the file")
         if path is not None and not path.is_file():
             raise _Refused(f"{path}: there is no such file; check the name and the folder")
 

@@ -114,16 +114,17 @@ def _phase_records(audit: Audit, rows: slice) -> Iterator[Record]:
     machine, solution = audit.machine, audit.solution
     pumps, actuators = pump_table(machine, solution, rows), actuator_table(machine, solution, rows)
     components, ports = component_table(machine, solution, rows), port_table(machine, solution, rows)
+    phases = _records(audit.phases[list(PHASE)].iloc[rows])
+    count = len(phases)
     named = zip(
-        _nested(pumps, lambda kind: PUMP),
-        _nested(actuators, _actuator_keys),
-        _nested(components, lambda kind: (*COMPONENT, "velocity_m_s") if kind == "line" else COMPONENT),
-        _nested(pumps, lambda kind: COMPONENT),
-        _nested(actuators, lambda kind: COMPONENT),
-        _pressures(ports),
+        _nested(pumps, count, lambda kind: PUMP),
+        _nested(actuators, count, _actuator_keys),
+        _nested(components, count, lambda kind: (*COMPONENT, "velocity_m_s") if kind == "line" else COMPONENT),
+        _nested(pumps, count, lambda kind: COMPONENT),
+        _nested(actuators, count, lambda kind: COMPONENT),
+        _pressures(ports, count),
         strict=True,
     )
-    phases = _records(audit.phases[list(PHASE)].iloc[rows])
     for phase, (of_pumps, of_actuators, parts, pump_parts, actuator_parts, pressures) in zip(
         phases, named, strict=True
     ):
@@ -142,12 +143,10 @@ def _actuator_keys(kind: str) -> tuple[str, ...]:
     return ("state", "flow_L_min", speed, "inlet_bar", "outlet_bar", "opening_percent")
 
 
-def _nested(table: pd.DataFrame, keys_of: Callable[[str], tuple[str, ...]]) -> Iterator[dict[str, Record]]:
-    """For each phase a record for each component."""
-    phases = int(table["phase_number"].nunique())
-    if not len(table):
-        yield from ({} for _ in range(phases))
-        return
+def _nested(
+    table: pd.DataFrame, phases: int, keys_of: Callable[[str], tuple[str, ...]]
+) -> Iterator[dict[str, Record]]:
+    """For each phase a record for each component; a machine may have none of a sort."""
     count = len(table) // phases
     names, kinds = table["component"].iloc[:count], table["kind"].iloc[:count]
     records = []
@@ -155,12 +154,12 @@ def _nested(table: pd.DataFrame, keys_of: Callable[[str], tuple[str, ...]]) -> I
         keys = keys_of(kind)
         columns = [_plain(table[key].iloc[k::count]) for key in keys]
         records.append([dict(zip(keys, values, strict=True)) for values in zip(*columns, strict=True)])
-    for of_phase in zip(*records, strict=True):
+    for of_phase in zip(*records, strict=True) if records else [()] * phases:
         yield dict(zip(names, of_phase, strict=True))
 
 
-def _pressures(ports: pd.DataFrame) -> Iterator[dict[str, float | None]]:
-    count = len(ports) // int(ports["phase_number"].nunique())
+def _pressures(ports: pd.DataFrame, phases: int) -> Iterator[dict[str, float | None]]:
+    count = len(ports) // phases
     labels, values = ports["port"].iloc[:count].tolist(), _plain(ports["pressure_bar"])
     for start in range(0, len(values), count):
         yield dict(zip(labels, values[start : start + count], strict=True))

@@ -36,10 +36,15 @@ def print_summary(audit: Audit, system: System, file: IO[str] | None = None) -> 
     """
     file = sys.stdout if file is None else file
     console = Console(file=file, width=WIDTH, highlight=False, emoji=False, soft_wrap=False)
+    with console.capture() as captured:  # rich would end the process where nobody reads on
+        _print_parts(audit, system, console)
+    file.writelines(f"{line.rstrip()}\n" for line in captured.get().splitlines())
+
+
+def _print_parts(audit: Audit, system: System, console: Console) -> None:
     console.print(Text(printable(audit.machine.general["machine"]), style="bold"))
     for line in _numbers(audit, system):
         console.print(Text(line))
-    console.print()
     console.print(_losses(audit, system))
     console.print(Text(f"Oil:    {oil_sentence(audit, system)}"))
     console.print(Text(f"Cooler: {restate(audit.cooler.verdict, system, cooler_names(audit))}"))
@@ -51,7 +56,8 @@ def print_summary(audit: Audit, system: System, file: IO[str] | None = None) -> 
         text.append(finding_text(finding, system), style="default")
         console.print(text)
     if len(findings) > MOST_FINDINGS:
-        console.print(Text(f"... and {len(findings) - MOST_FINDINGS} more findings in the report."))
+        more = len(findings) - MOST_FINDINGS
+        console.print(Text(f"... and {more} more finding{'' if more == 1 else 's'} in the report."))
 
 
 def cooler_names(audit: Audit) -> Iterable[str]:

@@ -81,8 +81,9 @@ def refuse_existing(folder: Path, replace: bool) -> None:
     replace
         Whether results that are there already may be replaced.
     """
-    if folder.exists() and not folder.is_dir():
-        raise ResultsExist(f"{folder} is a file; choose another folder with --out")
+    for place in (folder, *folder.parents):
+        if place.exists() and not place.is_dir():
+            raise ResultsExist(f"{place} is a file; choose another folder with --out")
     if folder.exists() and not replace:
         raise ResultsExist(f"{folder} exists already; replace its results with --replace or choose another with --out")
 

@@ -19,6 +19,9 @@ from tests.network.small import BAR, L_MIN, PUMP, VALVE, flow, run
 from tests.workbooks import Rows
 
 EXACT = 1e-9
+LEAST = 1.1e-8
+"""Pressure [bar] that every law adds at the whole pump flow, 0.001 Pa: no branch is infinitely conductive."""
+
 CONSUMERS = [["Actuator", "Kind", "Port A", "Port B"], ["One", "constant pressure", "a", "Tank"],
              ["Two", "constant pressure", "b", "Tank"]]  # fmt: skip
 NEVER = ["Never", "relief", "P", "Tank", 100, 20, 700]
@@ -123,15 +126,16 @@ def test_the_next_number_above_the_opening_point() -> None:
         assert shares(throttles((60, 0.015), (96, 0.03), total)) == pytest.approx([QC, 0, 96], rel=EXACT, abs=5e-8)
 
 
-@settings(max_examples=40, deadline=None, derandomize=True)
+@settings(max_examples=25, deadline=None, derandomize=True)
 @given(st.floats(0, 250), st.floats(0, 250), st.floats(1e-3, 300), st.floats(1e-3, 300), st.floats(0.5, 500))
 def test_any_two_branches(p1: float, p2: float, drop_1: float, drop_2: float, total: float) -> None:
     k1, k2 = drop_1 / total**2, drop_2 / total**2
     expected = split((p1, k1), (p2, k2), total)
-    # Every law has a slope of 1e-10 of 100 bar per pump flow at the least: 0.001 Pa over the whole flow.
-    assert shares(throttles((p1, k1), (p2, k2), total)) == pytest.approx(
-        list(expected), rel=EXACT, abs=EXACT * max(total, 1.0)
-    )
+    got = shares(throttles((p1, k1), (p2, k2), total))
+    assert got[2] == pytest.approx(expected[2], rel=EXACT, abs=LEAST)
+    # What 0.001 Pa moves between the branches: no more than it does where the weaker one is just open, dp = k q².
+    moved = sqrt(LEAST / min(k1, k2))
+    assert got[:2] == pytest.approx(expected[:2], rel=EXACT, abs=min(moved, 1e-6 * total))
 
 
 def test_two_laminar_lines() -> None:
@@ -154,8 +158,8 @@ def test_two_laminar_lines() -> None:
     assert found.viscosity[0] * found.density[0] == pytest.approx(0.04, rel=1e-12)
     first, second, pressure = shares(found)
     assert [first, second] == pytest.approx([11.4172447968, 18.5827552032], rel=EXACT)
-    assert pressure * BAR == pytest.approx(151425.912159, rel=EXACT)
-    assert first / second == pytest.approx(0.8**4 * 1.5, rel=EXACT)
+    assert pressure == pytest.approx(1.51425912159, rel=EXACT, abs=LEAST)
+    assert first / second == pytest.approx(0.8**4 * 1.5, rel=2 * EXACT)
 
 
 def test_two_orifices() -> None:
@@ -179,9 +183,9 @@ def test_two_equal_orifices() -> None:
     flow_at_10_bar = 0.6 * pi / 4 * 1e-6 * sqrt(2 * 10 * BAR / 870) / L_MIN
     k = 10 / flow_at_10_bar**2
     assert shares(throttles((0, k), (0, k), 10)) == pytest.approx([5, 5, 136.033070631], rel=EXACT)
-    for level, coefficient in ((0.0, 1e-6), (80.0, 0.01), (200.0, 1.0)):
+    for level, coefficient in ((0.0, 1e-6), (80.0, 0.01), (200.0, 0.3)):
         found = throttles((level, coefficient), (level, coefficient), 60)
-        assert shares(found) == pytest.approx([30, 30, level + 900 * coefficient], rel=EXACT)
+        assert shares(found) == pytest.approx([30, 30, level + 900 * coefficient], rel=EXACT, abs=LEAST)
 
 
 @pytest.mark.parametrize(

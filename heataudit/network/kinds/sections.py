@@ -126,7 +126,12 @@ class Gallery:
 
 
 class GalleryPassage(Unknown):
-    """What a gallery lets pass [-] per its flow in neutral at the same drop, by the openings of its spools."""
+    """What a gallery lets pass [-] per its flow in neutral at the same drop, by the openings of its spools.
+
+    An opening for a speed of a hundredth of the pump flow is known to about 1e-8 only, hence the tolerance.
+    """
+
+    tolerance = 1e-7
 
     def __init__(self, gallery: Gallery, branch: int) -> None:
         """Explicit where no opening has to be found."""
