@@ -13,34 +13,22 @@ Component kinds (the modules in `network.kinds`) make `Branch` objects; `stack` 
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, field, fields, replace
+from dataclasses import dataclass, field, replace
 from typing import Any, NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
 
 from heataudit.network.linear import Array
+from heataudit.physics.lines import LineShape
 
 Value = float | Array
 Flags = NDArray[np.bool_]
 
 
-@dataclass(frozen=True)
-class LineShape:
-    """What the friction law of a line needs, SI; scalars or shape (phases,)."""
-
-    diameter: Value
-    length: Value
-    roughness: Value
-    bends_k1: Value
-    bends_kinf: Value
-    minor_k: Value
-    count: Value
-
-    def take(self, rows: NDArray[np.intp]) -> LineShape:
-        """The same line for some of the phases."""
-        values = {f.name: getattr(self, f.name) for f in fields(self)}
-        return LineShape(**{name: v if np.ndim(v) == 0 else np.asarray(v)[rows] for name, v in values.items()})
+def some_phases(line: LineShape, rows: NDArray[np.intp]) -> LineShape:
+    """The same line for some of the phases."""
+    return LineShape(*(value if np.ndim(value) == 0 else np.asarray(value)[rows] for value in line))
 
 
 @dataclass(frozen=True)
@@ -143,7 +131,7 @@ class Branches:
         arrays |= {name: getattr(self, name)[rows] for name in ("flow_scale", "viscosity", "density")}
         return replace(
             self,
-            items=tuple(i if i.line is None else replace(i, line=i.line.take(rows)) for i in self.items),
+            items=tuple(i if i.line is None else replace(i, line=some_phases(i.line, rows)) for i in self.items),
             injections=tuple(Injection(i.component, i.node, i.flow[rows]) for i in self.injections),
             **arrays,
         )

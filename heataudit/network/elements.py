@@ -8,7 +8,7 @@ or the area ratio of the cylinder inside); a pump's slip is driven by outlet les
 
 from __future__ import annotations
 
-from dataclasses import dataclass, fields, replace
+from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import Any
 
@@ -16,7 +16,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from heataudit.network.linear import Array, BatchedLU
-from heataudit.physics.lines import line_drop
+from heataudit.physics.lines import LineShape, line_drop
 
 PRESSURE_SCALE = 1e7
 """Pressure [Pa] by which all pressures of the reduced network are divided (100 bar)."""
@@ -38,26 +38,26 @@ Integers = NDArray[np.intp]
 class LinePlaces:
     """Lines inside elements: place k lies in element `element[k]` (the same for all phases), its line may differ.
 
-    All arrays are of shape (places, batch), SI; an empty place has length 0.
+    All arrays, those of `shape` too, are of shape (places, batch), SI; an empty place has length 0.
     """
 
     element: Integers
     flow_factor: Array
     pressure_factor: Array
-    diameter: Array
-    length: Array
-    roughness: Array
-    bends_k1: Array
-    bends_kinf: Array
-    minor_k: Array
-    count: Array
+    shape: LineShape
     viscosity: Array
     density: Array
 
     def take(self, rows: Integers) -> LinePlaces:
         """The same places for some rows of the batch."""
-        arrays = {f.name: np.take(getattr(self, f.name), rows, axis=1) for f in fields(self) if f.name != "element"}
-        return replace(self, **arrays)
+        return LinePlaces(
+            self.element,
+            np.take(self.flow_factor, rows, axis=1),
+            np.take(self.pressure_factor, rows, axis=1),
+            LineShape(*(np.take(values, rows, axis=1) for values in self.shape)),
+            np.take(self.viscosity, rows, axis=1),
+            np.take(self.density, rows, axis=1),
+        )
 
 
 @dataclass(frozen=True)
@@ -106,10 +106,7 @@ class Elements:
         lines = self.lines
         if lines.element.size:
             line_flow = lines.flow_factor * flow[lines.element] * self.flow_scale
-            line, rise = line_drop(
-                line_flow, lines.diameter, lines.length, lines.roughness, lines.bends_k1, lines.bends_kinf,
-                lines.minor_k, lines.count, lines.viscosity, lines.density,
-            )  # fmt: skip
+            line, rise = line_drop(line_flow, lines.shape, lines.viscosity, lines.density)
             line *= lines.pressure_factor / PRESSURE_SCALE
             rise *= lines.pressure_factor * lines.flow_factor * (self.flow_scale / PRESSURE_SCALE)
             for place, element in enumerate(lines.element):

@@ -7,12 +7,21 @@ from dataclasses import replace
 import numpy as np
 from numpy.typing import NDArray
 
-from heataudit.network.branches import Branches, LineShape
+from heataudit.network.branches import Branches, some_phases
 from heataudit.network.elements import PRESSURE_SCALE, Elements, LinePlaces
 from heataudit.network.linear import Array
 from heataudit.network.topology import Topology
+from heataudit.physics.lines import LineShape
 
-LINE_FIELDS = ("diameter", "length", "roughness", "bends_k1", "bends_kinf", "minor_k", "count")
+
+def _no_lines(element: NDArray[np.intp], phases: int) -> LinePlaces:
+    """Places without a line in them: of length 0 and without fittings."""
+
+    def full(value: float) -> Array:
+        return np.full((len(element), phases), value)
+
+    shape = LineShape(full(1.0), full(0.0), full(1.0), full(0.0), full(0.0), full(0.0), full(1.0))
+    return LinePlaces(element, full(1.0), full(1.0), shape, full(1.0), full(1.0))
 
 
 class Folding:
@@ -48,10 +57,7 @@ class Folding:
         arrays |= {"low": np.full((slots, phases), -np.inf), "high": np.full((slots, phases), np.inf)}
         active = np.zeros((slots, phases), bool)
         element = np.array(self._places, np.intp)
-        lines = {name: np.ones((len(element), phases)) for name in
-                 (*LINE_FIELDS, "viscosity", "density", "flow_factor", "pressure_factor")}  # fmt: skip
-        for name in ("length", "bends_k1", "bends_kinf", "minor_k"):
-            lines[name][:] = 0.0
+        lines = _no_lines(element, phases)
         for chain, slot, rows in self.topology.runs:
             active[slot, rows] = True
             free = iter(np.flatnonzero(element == slot).tolist())
@@ -67,7 +73,8 @@ class Folding:
                 arrays["high"][slot, rows] = np.minimum(arrays["high"][slot, rows], high)
                 shape = br.items[k].line
                 if shape is not None:
-                    self._fill_line(lines, next(free), rows, shape, viscosity_factor[k, rows], (a, b))
+                    here = some_phases(shape, rows)
+                    self._fill_line(lines, next(free), rows, here, viscosity_factor[k, rows], (a, b))
                 a, b = a * br.ratio[k, rows], b * br.gain[k, rows]
             arrays["ratio"][slot, rows] = a
             arrays["gain"][slot, rows] = b
@@ -86,7 +93,7 @@ class Folding:
             active=active,
             injection=self._injection() / scale,
             flow_scale=scale,
-            lines=LinePlaces(element=element, **lines),
+            lines=lines,
         )
 
     def thicken(self, elements: Elements, viscosity_factor: Array) -> Elements:
@@ -102,17 +109,16 @@ class Folding:
         return changed
 
     def _fill_line(
-        self, lines: dict[str, Array], place: int, rows: NDArray[np.intp], shape: LineShape, thicker: Array,
+        self, lines: LinePlaces, place: int, rows: NDArray[np.intp], shape: LineShape, thicker: Array,
         factors: tuple[float | Array, float | Array],
     ) -> None:  # fmt: skip
         """Put a line into its place."""
-        for name in LINE_FIELDS:
-            value = np.asarray(getattr(shape, name))
-            lines[name][place, rows] = value if value.ndim == 0 else value[rows]
-        lines["viscosity"][place, rows] = self.branches.viscosity[rows] * thicker
-        lines["density"][place, rows] = self.branches.density[rows]
-        lines["flow_factor"][place, rows] = factors[0]
-        lines["pressure_factor"][place, rows] = factors[1]
+        for values, value in zip(lines.shape, shape, strict=True):
+            np.asarray(values)[place, rows] = value
+        lines.viscosity[place, rows] = self.branches.viscosity[rows] * thicker
+        lines.density[place, rows] = self.branches.density[rows]
+        lines.flow_factor[place, rows] = factors[0]
+        lines.pressure_factor[place, rows] = factors[1]
 
     def _incidence(self) -> dict[str, NDArray[np.intp]]:
         """Nodes that each slot connects and those that drive it."""

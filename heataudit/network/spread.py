@@ -7,7 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from heataudit.network.branches import Branches
+from heataudit.network.branches import Branches, some_phases
 from heataudit.network.elements import PRESSURE_SCALE
 from heataudit.network.interior_point import Point
 from heataudit.network.linear import Array
@@ -126,10 +126,8 @@ def _drop(branches: Branches, k: int, rows: Rows, flow: Array, viscosity_factor:
     drop = np.where(limited, np.maximum(drop, -power / np.where(limited, flow, 1.0)), drop)
     shape = branches.items[k].line
     if shape is not None:
-        friction, _ = line_drop(
-            flow, shape.diameter, shape.length, shape.roughness, shape.bends_k1, shape.bends_kinf, shape.minor_k,
-            shape.count, branches.viscosity[rows] * viscosity_factor[k, rows], branches.density[rows],
-        )  # fmt: skip
+        thick = branches.viscosity[rows] * viscosity_factor[k, rows]
+        friction, _ = line_drop(flow, some_phases(shape, rows), thick, branches.density[rows])
         drop = drop + friction
     return drop
 

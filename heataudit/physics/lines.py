@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from typing import Any
+from typing import Any, NamedTuple
 
 import numpy as np
 
@@ -181,12 +181,40 @@ def reynolds_number(velocity: Numbers, diameter: Numbers, viscosity: Numbers) ->
     return np.asarray(np.abs(velocity)) * diameter / viscosity
 
 
-def _block_drop(
-    flow: Array, diameter: Array, length: Array, roughness: Array, bends_k1: Array, bends_kinf: Array, minor_k: Array,
-    count: Array, viscosity: Array, density: Array,
-) -> tuple[Array, Array]:  # fmt: skip
-    """What `line_drop` gives, for one-dimensional arrays of one length."""
-    per_flow = 1.0 / (0.25 * np.pi * diameter * diameter * count)
+class LineShape(NamedTuple):
+    """What a line is to its oil; numbers or arrays that broadcast against each other.
+
+    Parameters
+    ----------
+    diameter
+        Inside diameter D [m].
+    length
+        Length L [m].
+    roughness
+        Roughness of the wall [m].
+    bends_k1
+        Number of bends times K1 [-].
+    bends_kinf
+        Number of bends times K_inf (1 + 1/D_inch) [-].
+    minor_k
+        Loss coefficient of ends and fittings [-].
+    parallel
+        Number of equal lines side by side, which share the flow [-].
+    """
+
+    diameter: Numbers
+    length: Numbers
+    roughness: Numbers
+    bends_k1: Numbers
+    bends_kinf: Numbers
+    minor_k: Numbers
+    parallel: Numbers
+
+
+def _block_drop(flow: Array, viscosity: Array, density: Array, *shape: Array) -> tuple[Array, Array]:
+    """What `line_drop` gives, for one-dimensional arrays of one length; `shape` as in `LineShape`."""
+    diameter, length, roughness, bends_k1, bends_kinf, minor_k, parallel = shape
+    per_flow = 1.0 / (0.25 * np.pi * diameter * diameter * parallel)
     speed = flow * per_flow
     reynolds = reynolds_number(speed, diameter, viscosity)
     multiple, growth = _laminar_multiple(reynolds, roughness / diameter)
@@ -198,10 +226,7 @@ def _block_drop(
     return drop, slope
 
 
-def line_drop(
-    flow: Numbers, diameter: Numbers, length: Numbers, roughness: Numbers, bends_k1: Numbers, bends_kinf: Numbers,
-    minor_k: Numbers, count: Numbers, viscosity: Numbers, density: Numbers,
-) -> tuple[Array, Array]:  # fmt: skip
+def line_drop(flow: Numbers, line: LineShape, viscosity: Numbers, density: Numbers) -> tuple[Array, Array]:
     """Frictional pressure drop of a whole line [Pa] and its slope over flow [Pa·s/m³].
 
     dp = (f L/D + K1/Re + K) rho v |v| / 2 = rho nu v / (2 D) (f Re L/D + K1 + K Re), with Churchill's f.
@@ -210,20 +235,8 @@ def line_drop(
     ----------
     flow
         Flow of all equal lines together [m³/s], signed, any shape.
-    diameter
-        Inside diameter D [m], any shape.
-    length
-        Length L [m], any shape.
-    roughness
-        Roughness of the wall [m], any shape.
-    bends_k1
-        Number of bends times K1 [-], any shape.
-    bends_kinf
-        Number of bends times K_inf (1 + 1/D_inch) [-], any shape.
-    minor_k
-        Loss coefficient of ends and fittings [-], any shape.
-    count
-        Number of equal lines side by side, which share the flow [-], any shape.
+    line
+        The line, or arrays of lines.
     viscosity
         Kinematic viscosity nu [m²/s], any shape.
     density
@@ -235,11 +248,9 @@ def line_drop(
     analytic derivative. Fastest with arrays of one memory layout. Sources: Darcy and Weisbach; Churchill 1977;
     Hooper 1981.
     """
-    arguments: list[Numbers | None]
-    arguments = [flow, diameter, length, roughness, bends_k1, bends_kinf, minor_k, count, viscosity, density]
     access: list[Any] = [["readonly"]] * 10 + [["writeonly", "allocate"]] * 2
     walk = np.nditer(
-        [*arguments, None, None],
+        [flow, viscosity, density, *line, None, None],
         flags=["buffered", "external_loop", "zerosize_ok"],
         op_flags=access,
         op_dtypes=[np.float64] * 12,

@@ -143,9 +143,7 @@ def _actuator_keys(kind: str) -> tuple[str, ...]:
     return ("state", "flow_L_min", speed, "inlet_bar", "outlet_bar", "opening_percent")
 
 
-def _nested(
-    table: pd.DataFrame, phases: int, keys_of: Callable[[str], tuple[str, ...]]
-) -> Iterator[dict[str, Record]]:
+def _nested(table: pd.DataFrame, phases: int, keys_of: Callable[[str], tuple[str, ...]]) -> Iterator[dict[str, Record]]:
     """For each phase a record for each component; a machine may have none of a sort."""
     count = len(table) // phases
     names, kinds = table["component"].iloc[:count], table["kind"].iloc[:count]

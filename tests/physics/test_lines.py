@@ -15,12 +15,17 @@ from numpy.testing import assert_allclose, assert_array_equal
 from heataudit.physics import lines
 
 L_MIN = 1e-3 / 60
-BARE: dict[str, Any] = {"roughness": 0.0, "bends_k1": 0.0, "bends_kinf": 0.0, "minor_k": 0.0, "count": 1.0}
-FITTED: dict[str, Any] = {"roughness": 1e-5, "bends_k1": 1600.0, "bends_kinf": 0.9, "minor_k": 1.0, "count": 1.0}
+BARE: dict[str, Any] = {"roughness": 0.0, "bends_k1": 0.0, "bends_kinf": 0.0, "minor_k": 0.0, "parallel": 1.0}
+FITTED: dict[str, Any] = {"roughness": 1e-5, "bends_k1": 1600.0, "bends_kinf": 0.9, "minor_k": 1.0, "parallel": 1.0}
+
+
+def line_drop(flow: Any, *, viscosity: Any, density: Any, **shape: Any) -> tuple[Any, Any]:
+    """Drop and slope of a line by the names of its numbers."""
+    return lines.line_drop(flow, lines.LineShape(**shape), viscosity, density)
 
 
 def bare_drop(flow: float, **other: Any) -> float:
-    return float(lines.line_drop(flow, **{**BARE, **other})[0])
+    return float(line_drop(flow, **{**BARE, **other})[0])
 
 
 def library_drop(flow: float, diameter: float, length: float, viscosity: float, density: float, roughness: float = 0.0
@@ -213,7 +218,7 @@ def test_bends_and_ends_add_to_the_pipe() -> None:
 
 def test_at_rest_drop_is_nil_and_slope_is_laminar() -> None:
     diameter, viscosity, density = 0.02, 46e-6, 870.0
-    drop, slope = lines.line_drop(0.0, diameter=diameter, length=2.0, viscosity=viscosity, density=density, **FITTED)
+    drop, slope = line_drop(0.0, diameter=diameter, length=2.0, viscosity=viscosity, density=density, **FITTED)
     # exact: (64 L/D + K1) rho nu v / (2 D), v = Q / (pi D² / 4)
     expected = (64 * 2.0 / diameter + 1600) * density * viscosity / (2 * diameter) / (np.pi / 4 * diameter**2)
     assert drop == 0.0
@@ -228,18 +233,18 @@ def test_slope_is_the_derivative() -> None:
              "density": 870.0}  # fmt: skip
 
     def drop(factor: float) -> np.ndarray:
-        return lines.line_drop(flow * factor, **other)[0]
+        return line_drop(flow * factor, **other)[0]
 
     h = 1e-4
     # finite difference of fourth order: its own error is below 1e-9 here
     difference = (8 * (drop(1 + h) - drop(1 - h)) - drop(1 + 2 * h) + drop(1 - 2 * h)) / (12 * h * flow)
-    assert_allclose(lines.line_drop(flow, **other)[1], difference, rtol=1e-8)
+    assert_allclose(line_drop(flow, **other)[1], difference, rtol=1e-8)
 
 
 def test_equal_lines_share_the_flow() -> None:
     line = {**FITTED, "diameter": 0.02, "length": 4.0, "viscosity": 46e-6, "density": 870.0}
-    one_drop, one_slope = lines.line_drop(1e-3, **line)
-    drop, slope = lines.line_drop(3e-3, **{**line, "count": 3.0})
+    one_drop, one_slope = line_drop(1e-3, **line)
+    drop, slope = line_drop(3e-3, **{**line, "parallel": 3.0})
     assert drop == pytest.approx(float(one_drop), rel=1e-14)  # exact: each carries a third
     assert slope == pytest.approx(float(one_slope) / 3, rel=1e-14)
 
@@ -251,17 +256,17 @@ def test_a_batch_is_its_lines_one_by_one() -> None:
     diameter = random.uniform(6e-3, 40e-3, (7, 1))
     viscosity = random.uniform(10e-6, 400e-6, (1, 3000))
     other = {"length": 2.0, "density": 860.0, **FITTED}
-    drop, slope = lines.line_drop(flow, diameter=diameter, viscosity=viscosity, **other)
+    drop, slope = line_drop(flow, diameter=diameter, viscosity=viscosity, **other)
     assert drop.shape == slope.shape == shape
     for row, column in [(0, 0), (3, 1234), (6, 2999)]:
-        one = lines.line_drop(
+        one = line_drop(
             flow[row, column], diameter=diameter[row, 0], viscosity=viscosity[0, column], **other
         )  # fmt: skip
         assert one == (drop[row, column], slope[row, column])
 
 
 def test_an_empty_batch_gives_an_empty_answer() -> None:
-    drop, slope = lines.line_drop(np.zeros((0, 5)), diameter=0.02, length=1.0, viscosity=46e-6, density=870.0, **BARE)
+    drop, slope = line_drop(np.zeros((0, 5)), diameter=0.02, length=1.0, viscosity=46e-6, density=870.0, **BARE)
     assert drop.shape == slope.shape == (0, 5)
 
 
@@ -269,21 +274,21 @@ FLOWS = st.floats(1e-9, 0.1)
 LINES = st.fixed_dictionaries({
     "diameter": st.floats(4e-3, 0.1), "length": st.floats(0.01, 50), "roughness": st.floats(0, 5e-5),
     "bends_k1": st.floats(0, 8000), "bends_kinf": st.floats(0, 10), "minor_k": st.floats(0, 10),
-    "count": st.integers(1, 4), "viscosity": st.floats(2e-6, 5e-3), "density": st.floats(780, 950),
+    "parallel": st.integers(1, 4), "viscosity": st.floats(2e-6, 5e-3), "density": st.floats(780, 950),
 })  # fmt: skip
 
 
 @given(flow=FLOWS, line=LINES)
 def test_drop_is_odd(flow: float, line: dict[str, float]) -> None:
-    forward, backward = lines.line_drop(flow, **line), lines.line_drop(-flow, **line)
+    forward, backward = line_drop(flow, **line), line_drop(-flow, **line)
     assert forward[0] == -backward[0]
     assert forward[1] == backward[1]
 
 
 @given(flow=FLOWS, more=st.floats(1.001, 3), line=LINES)
 def test_drop_rises_with_flow(flow: float, more: float, line: dict[str, float]) -> None:
-    drop, slope = lines.line_drop(flow, **line)
-    assert lines.line_drop(flow * more, **line)[0] > drop
+    drop, slope = line_drop(flow, **line)
+    assert line_drop(flow * more, **line)[0] > drop
     assert slope > 0
     # from laminar to fully rough the drop grows at least as the flow
     assert slope * flow >= drop * (1 - 1e-12)

@@ -4,10 +4,10 @@ from __future__ import annotations
 
 from typing import Any
 
-from heataudit.network.branches import Branch, LineShape
+from heataudit.network.branches import Branch
 from heataudit.network.plant import Plant
 from heataudit.physics.constants import STANDARD_GRAVITY
-from heataudit.physics.lines import END_LOSS, bend_coefficients
+from heataudit.physics.lines import END_LOSS, LineShape, bend_coefficients
 
 
 def make(line: Any, plant: Plant) -> Branch:
@@ -20,7 +20,7 @@ def make(line: Any, plant: Plant) -> Branch:
         bends_k1=line.bends * k1,
         bends_kinf=line.bends * k_infinity,
         minor_k=line.loss_coefficient + END_LOSS * line.ends,
-        count=line.count,
+        parallel=line.count,
     )
     head = plant.density * STANDARD_GRAVITY * line.rise
     return Branch(line.name, "line", plant.node(line.from_), plant.node(line.to), constant=head, line=shape)
