@@ -207,7 +207,7 @@ PRESS: Sheets = {
         ["Feed", "P1", "Stand.P", "pressure", "30x4", 2.5, 3, "drilled", 0.5],
         ["Lift tube left", "Platen valve.A", "J", "pressure", "30x4", 3.5, 4, "swept", 0.6],
         ["Lift tube right", "J", "Platen.A", "pressure", "30x4", 1.8, 2, "swept", 0.4],
-        ["Unloading tube", "U", "Tank", "return", "30x3", 1.2, 2, "swept", -0.5],
+        ["Unloading tube", "U", "Tank", "return", "30x3", 1.2, 2, "swept", None],
         ["Clamp hose head", "Clamp valve.A", "Clamp.A", "pressure", "DN10", 4, 2, "swept", None],
         ["Clamp hose rod", "Clamp valve.B", "Clamp.B", "pressure", "DN10", 4, 2, "swept", None],
         ["Return tube", "Stand.T", "R", "return", "38x3", 2.5, 3, "swept", -0.5],

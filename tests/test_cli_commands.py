@@ -147,6 +147,33 @@ def test_a_full_disk_is_one_line(rig, monkeypatch, capsys):
     assert not rig.with_name("rig-audit").exists()
 
 
+@pytest.mark.usefixtures("hand_made")
+def test_stopping_leaves_nothing(rig, monkeypatch, capsys):
+    from heataudit.report import write as writing
+
+    def stopped(*given):
+        raise KeyboardInterrupt
+
+    monkeypatch.setattr(writing, "write_workbook", stopped)
+    assert main(["run", str(rig)]) == 130
+    assert capsys.readouterr().err == "heataudit: stopped\n"
+    assert list(rig.parent.iterdir()) == [rig]
+
+
+def test_a_folder_is_no_workbook(tmp_path, capsys):
+    assert main(["run", str(tmp_path)]) == 2
+    assert capsys.readouterr().err == f"heataudit: {tmp_path}: that is a folder; give the file\n"
+
+
+def test_a_reader_who_stops_is_no_error(rig):
+    command = [sys.executable, "-m", "heataudit", "check", str(rig)]
+    environment = os.environ | {"PYTHONPATH": str(ROOT)}
+    with subprocess.Popen(command, stdout=subprocess.PIPE, stderr=subprocess.PIPE, text=True, env=environment) as child:
+        child.stdout.close()
+        assert child.stderr.read() == ""
+    assert child.returncode == 141
+
+
 def python(*arguments):
     environment = os.environ | {"PYTHONPATH": str(ROOT)}
     return subprocess.run([sys.executable, *arguments], capture_output=True, text=True, env=environment, check=False)

@@ -15,6 +15,7 @@ from heataudit.machine.cycle import CycleSheet, build_cycle, read_cycle
 from heataudit.machine.cycle_checks import check_cycle, shut_throttles
 from heataudit.machine.defaults import DEFAULTS_COLUMNS, INPUTS_COLUMNS, fill, inputs, listing
 from heataudit.machine.grids import checksum, read_log, read_workbook, table_grid
+from heataudit.machine.heights import check_rises
 from heataudit.machine.model import Machine, Problem, WorkbookError
 from heataudit.machine.names import check_names, resolve_references
 from heataudit.machine.ports import connect
@@ -140,6 +141,7 @@ def _cross_check(sheets: dict[str, Sheet], read: CycleSheet) -> None:
     ports = connect(*(sheets[key].frame for key in ("pumps", "lines", "valves", "sections", "actuators")))
     check_cycle(read, sheets, ports)
     check_routes(sheets, ports, shut_throttles(read))
+    check_rises(sheets, ports)
 
 
 def _in_order(problems: Iterable[Problem]) -> list[Problem]:

@@ -1,10 +1,13 @@
 from __future__ import annotations
 
+import tracemalloc
+
 import pandas as pd
 import pytest
 
 from heataudit.report import chunks
 from heataudit.report.phases_csv import COLUMNS, write_phases
+from heataudit.report.results_json import write_results
 from tests.report.fixture import audit
 
 
@@ -40,3 +43,17 @@ def test_a_name_is_never_a_formula(tmp_path):
     assert "'@SUM(1)+Main pump" in text
     assert ",@SUM" not in text
     assert "\n@SUM" not in text
+
+
+@pytest.mark.parametrize("write_file", [write_phases, write_results])
+def test_a_cycle_eight_times_as_long_needs_no_more_memory(tmp_path, monkeypatch, write_file):
+    monkeypatch.setattr(chunks, "CELLS", 1000)
+    peaks = []
+    for phases in (120, 120, 960):  # the first warms caches
+        made = audit(phases)
+        tracemalloc.start()
+        write_file(made, tmp_path / "file")
+        peaks.append(tracemalloc.get_traced_memory()[1])
+        tracemalloc.stop()
+    # both peaks are those of one piece, so a quarter more is ample; written whole, the last would be 8 times larger
+    assert peaks[2] < 1.25 * peaks[1]

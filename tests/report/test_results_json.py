@@ -1,7 +1,7 @@
 from __future__ import annotations
 
 import json
-from dataclasses import replace
+from dataclasses import fields, replace
 
 import numpy as np
 import pytest
@@ -106,6 +106,18 @@ def test_what_is_no_number_is_null(tmp_path):
     assert results["cooler"]["required_kW_K"] is None
     assert results["thermal"]["equilibrium_C"] is None
     assert results["thermal"]["ripple_K"] is None
+
+
+def test_a_machine_may_have_no_actuators(tmp_path, monkeypatch):
+    monkeypatch.setattr(chunks, "CELLS", 60)  # also in pieces
+    made = audit()
+    actuators = made.solution.actuators
+    none = replace(actuators, **{field.name: getattr(actuators, field.name)[:0] for field in fields(actuators)})
+    made = replace(made, solution=replace(made.solution, actuators=none))
+    results = written(made, tmp_path / "results.json")
+    assert [phase["actuators"] for phase in results["phases"]] == [{}] * 6
+    assert "Main pump" in results["phases"][5]["components"]
+    assert "Ram" not in results["phases"][5]["components"]
 
 
 def test_diesel_has_litres_and_electric_has_kilowatt_hours(tmp_path):

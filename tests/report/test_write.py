@@ -54,6 +54,14 @@ def test_a_file_of_that_name_is_never_replaced(tmp_path):
 
 
 @pytest.mark.usefixtures("quick")
+def test_a_folder_cannot_lie_in_a_file(tmp_path):
+    (tmp_path / "out").write_text("mine")
+    with pytest.raises(ResultsExist, match="out is a file; choose another folder"):
+        write_report(audit(), tmp_path / "out" / "deep" / "here")
+    assert files(tmp_path) == {"out"}
+
+
+@pytest.mark.usefixtures("quick")
 def test_replacing_keeps_what_others_wrote_and_drops_stale_charts(tmp_path, monkeypatch):
     out = tmp_path / "out"
     write_report(audit(), out)
