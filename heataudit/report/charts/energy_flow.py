@@ -56,13 +56,14 @@ def draw(audit: Audit, system: System) -> Figure:
         "SI" or "US".
     """
     coming, going = streams(audit)
-    total = sum(s.energy for s in coming)
+    shaft = audit.cycle.shaft_energy_kJ
+    whole, what = (shaft, "the shaft energy") if shaft > 0 else (sum(s.energy for s in coming), "what comes in")
     if not coming or not going:
         return nothing_to_show(_title(audit), "No energy comes in or goes out in this cycle.")
-    figure, top = titled_figure(_title(audit), "Energy of one duty cycle; widths are in proportion.", BODY)
+    figure, top = titled_figure(_title(audit), f"Energy of one duty cycle; shares are of {what}.", BODY)
     axes = drawing(figure)
     left = MARGIN + max(text_size(s.name, bold=True)[0] for s in coming) + 0.12
-    right = WIDTH - MARGIN - max(text_size(_label(s, total, system))[0] for s in going) - 0.85
+    right = WIDTH - MARGIN - max(text_size(_label(s, whole, system))[0] for s in going) - 0.85
     middle = (MARGIN + top) / 2
     slots, scale = _slots([s.energy for s in going], top - MARGIN)
     _draw_coming(axes, coming, (left, middle, scale), system)
@@ -73,7 +74,7 @@ def draw(audit: Audit, system: System) -> Figure:
         centre = slot_top - slot / 2
         axes.add_patch(_ribbon((left + BLOCK, start), (right, centre + thick / 2), thick, stream.colour))
         axes.add_patch(_bar(right, centre, thick, stream.colour))
-        axes.text(right + BLOCK + 0.08, centre, _label(stream, total, system), va="center", ha="left")
+        axes.text(right + BLOCK + 0.08, centre, _label(stream, whole, system), va="center", ha="left")
         start -= thick
         slot_top -= slot + GAP
     return figure
@@ -110,8 +111,8 @@ def _title(audit: Audit) -> str:
     return f"{share_text(efficiency)} of the shaft energy does useful work; largest loss: {name}, {largest}"
 
 
-def _label(stream: Stream, total: float, system: System) -> str:
-    return f"{stream.name}  {quantity(stream.energy, 'kJ', system)}, {share_text(stream.energy / total)}"
+def _label(stream: Stream, whole: float, system: System) -> str:
+    return f"{stream.name}  {quantity(stream.energy, 'kJ', system)}, {share_text(stream.energy / whole)}"
 
 
 def _slots(energies: list[float], height: float) -> tuple[list[float], float]:
