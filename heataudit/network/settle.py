@@ -92,17 +92,20 @@ def settle(branches: Branches, around: Surroundings) -> Settled:
 
 
 def _missing(branches: Branches, state: Spread) -> Flags:
-    """Lazy branches, shape (branches, phases), that are left out and whose ends would open them."""
-    missing = np.zeros_like(branches.open)
+    """Lazy branches, shape (branches, phases), that are left out and whose ends would open them.
+
+    Pilots lift theirs only where nothing else is missing: what relieves the pilot pressure comes first.
+    """
+    missing, lifted = np.zeros_like(branches.open), np.zeros_like(branches.open)
     for k in np.flatnonzero(branches.lazy):
         item = branches.items[k]
         across = state.pressure[item.start] - state.pressure[item.end]
         if item.pilot >= 0:
-            opens = (across < 0) & (item.pilot_ratio * state.pressure[item.pilot] + across >= 0)
+            lifts = (across < 0) & (item.pilot_ratio * state.pressure[item.pilot] + across >= 0)
+            lifted[k] = ~branches.open[k] & lifts
         else:
-            opens = across > branches.constant[k] + OPENS
-        missing[k] = ~branches.open[k] & opens
-    return missing
+            missing[k] = ~branches.open[k] & (across > branches.constant[k] + OPENS)
+    return missing | (lifted & ~missing.any(axis=0))
 
 
 def _replaced(branches: Branches, opened: Flags) -> Flags:

@@ -189,7 +189,8 @@ def test_two_equal_orifices() -> None:
 
 
 @pytest.mark.parametrize(
-    ("total", "first", "second", "pressure"), [(60, 40, 20, 40), (30, 30, 0, 35), (20, 20, 0, 30), (29.999, 29.999, 0, None)]
+    ("total", "first", "second", "pressure"),
+    [(60, 40, 20, 40), (30, 30, 0, 35), (20, 20, 0, 30), (29.999, 29.999, 0, None)],
 )
 def test_linear_branches(total: float, first: float, second: float, pressure: float | None) -> None:
     # Filters: R = rated drop / rated flow x nu / rated nu, here at their rated viscosity. p1 = 20, R1 = 0.5, p2 = 35,
