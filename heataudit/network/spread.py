@@ -133,37 +133,67 @@ def _drop(branches: Branches, k: int, rows: Rows, flow: Array, viscosity_factor:
 
 
 def _dead_ends(branches: Branches, pattern: Pattern, state: Spread) -> None:
-    """Pressures behind open branches without flow: the pressure in front of them, less what holds them shut.
+    """Pressures where oil stands still behind open branches.
 
-    Behind an actuator that cannot move it is the pressure that balances its load.
+    Ways that pass both ways carry the pressure; a check holds what stands in front of it, less what opens it, the
+    highest where there are several; behind an actuator that cannot move stands what balances its load.
     """
     rows = pattern.rows
     known = ~np.isnan(state.pressure[:, rows[0]])
     living = {k for chain in pattern.chains for k, _ in chain.items}
     quiet = [k for k in np.flatnonzero(branches.open[:, rows[0]]).tolist() if k not in living]
-    ways = [k for k in quiet if branches.items[k].role not in MOVES]
-    blocked = [k for k in quiet if branches.items[k].role in MOVES]
-    _pass_on(branches, rows, state, known, [k for k in ways if not branches.items[k].one_way])
-    for k in blocked:
-        item = branches.items[k]
+    both_ways = [k for k in quiet if branches.items[k].role not in MOVES and not branches.items[k].one_way]
+    one_way = [k for k in quiet if k not in both_ways]
+    for node in np.flatnonzero(known).tolist():
+        known |= _spread_level(branches, rows, state, (node, both_ways), known)
+    solved = known.copy()
+    for _ in range(branches.node_count):
+        raised = False
+        for k in one_way:
+            start, end = branches.items[k].start, branches.items[k].end
+            if not known[start] or solved[end]:
+                continue
+            held = _held_behind(branches, k, rows, state)
+            if not known[end] or (held > state.pressure[end, rows] + HELD_APART).any():
+                state.pressure[end, rows] = np.fmax(state.pressure[end, rows], held)
+                known |= _spread_level(branches, rows, state, (end, both_ways), solved)
+                raised = True
+        if not raised:
+            return
+
+
+HELD_APART = 1e-3
+"""Pressure [Pa] by which one check must hold more than another to count."""
+
+
+def _held_behind(branches: Branches, k: int, rows: Rows, state: Spread) -> Array:
+    """Pressure [Pa] that a still one-way branch holds at its end."""
+    item = branches.items[k]
+    held = state.pressure[item.start, rows] - branches.constant[k, rows]
+    if item.role in MOVES:
         gain = branches.gain[k, rows]
-        if known[item.start] and not known[item.end] and (gain > 0).all():
-            held = (state.pressure[item.start, rows] - branches.constant[k, rows]) / gain
-            state.pressure[item.end, rows] = np.maximum(held, 0.0)
-            known[item.end] = True
-    _pass_on(branches, rows, state, known, ways)
+        held = np.where(gain > 0, np.maximum(held / np.where(gain > 0, gain, 1.0), 0.0), np.nan)
+    return held
 
 
-def _pass_on(branches: Branches, rows: Rows, state: Spread, known: NDArray[np.bool_], ways: list[int]) -> None:
-    """Carry known pressures over still oil."""
-    moved = True
-    while moved:
-        moved = False
+def _spread_level(
+    branches: Branches, rows: Rows, state: Spread, region: tuple[int, list[int]], fixed: NDArray[np.bool_]
+) -> NDArray[np.bool_]:
+    """Bring what hangs together with a node, over the ways given, to its pressure, in place; the nodes reached.
+
+    Nodes that are `fixed`, shape (nodes,), keep what they have.
+    """
+    first, ways = region
+    reached = np.zeros(len(fixed), bool)
+    reached[first] = True
+    waiting = [first]
+    while waiting:
+        node = waiting.pop()
         for k in ways:
             item = branches.items[k]
-            if known[item.start] and not known[item.end]:
-                state.pressure[item.end, rows] = state.pressure[item.start, rows] - branches.constant[k, rows]
-                known[item.end] = moved = True
-            elif known[item.end] and not known[item.start] and not item.one_way:
-                state.pressure[item.start, rows] = state.pressure[item.end, rows] + branches.constant[k, rows]
-                known[item.start] = moved = True
+            for near, far, sign in ((item.start, item.end, -1.0), (item.end, item.start, 1.0)):
+                if near == node and not reached[far] and not fixed[far]:
+                    state.pressure[far, rows] = state.pressure[near, rows] + sign * branches.constant[k, rows]
+                    reached[far] = True
+                    waiting.append(far)
+    return reached
