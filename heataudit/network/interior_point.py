@@ -23,7 +23,7 @@ from heataudit.network.elements import Elements, Integers
 from heataudit.network.linear import Array
 
 RESIDUAL_GOAL = 1e-10
-GAP_GOAL = 1e-12
+GAP_GOAL = 1e-15
 MAX_ITERATIONS = 60
 STEP_TO_BOUNDARY = 0.995
 PLAIN_CENTRING = 0.1
