@@ -157,6 +157,7 @@ def year(machine: Machine, totals: CycleTotals, table: pd.DataFrame, cooler: Coo
         co2_kg=co2,
         currency=str(general["currency"]),
         price_per_kWh_loss=cost / shaft if cost is not None and shaft > 0 else None,
+        fan_cost=None if cost is None or fuel is not None else float(fan) * hours * float(general["energy_price"]),
     )
 
 

@@ -100,6 +100,7 @@ class Annual:
     """A year's energy and money for the operating hours; None where a price, a factor or such a drive is not given.
 
     `price_per_kWh_loss` is what a kWh of heat costs as drive input [currency/kWh], for ranking losses in money.
+    `fan_kWh` and `fan_cost` are what the fan of the chosen cooler takes beside the drives.
     """
 
     operating_hours: float
@@ -112,6 +113,7 @@ class Annual:
     co2_kg: float | None
     currency: str
     price_per_kWh_loss: float | None
+    fan_cost: float | None = None
 
 
 @dataclass(frozen=True)

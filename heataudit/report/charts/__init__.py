@@ -11,7 +11,7 @@ from heataudit.report.quantities import System
 
 CHARTS = (
     "energy-flow", "losses-ranked", "cycle-timeline", "pressure-flow-rectangles", "line-velocities", "heat-balance",
-    "warm-up", "cooler-curves",
+    "warm-up", "cooler-curves", "cooler-drop",
 )  # fmt: skip
 """Charts by name; each is drawn by the module of that name."""
 

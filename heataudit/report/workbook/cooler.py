@@ -7,7 +7,7 @@ from openpyxl.worksheet.worksheet import Worksheet
 
 from heataudit.audit.model import Audit
 from heataudit.report.charts.warm_up import duration_text
-from heataudit.report.quantities import System, quantity, restate
+from heataudit.report.quantities import System, grouped, quantity, restate
 from heataudit.report.safe import printable
 from heataudit.report.workbook.page import CHARACTER, Look, Report, paragraph, picture, put, width_of
 from heataudit.report.workbook.table import Field, Plan, write_table
@@ -47,10 +47,11 @@ def write_cooler(report: Report) -> None:
     _write_facts(sheet, 4, facts)
     report.places.setdefault("Oil", (sheet.title, 4))
     report.places.setdefault("Cooler", (sheet.title, 4))
-    sheet.row_breaks.append(Break(id=row - 1))
+    sheet.row_breaks.append(Break(id=row - 2))
     half = sum(width_of(sheet, column) for column in range(1, COLUMNS + 1)) * CHARACTER / 2
     picture(report, sheet, row, "warm-up", half - 0.1, left=half)
     row = picture(report, sheet, row, "heat-balance", half - 0.1)
+    picture(report, sheet, row, "cooler-drop", half - 0.1, left=half)
     row = picture(report, sheet, row, "cooler-curves", half - 0.1)
     sheet.print_area = f"A1:J{row}"
 
@@ -95,6 +96,7 @@ def cooler_facts(audit: Audit, system: System) -> list[tuple[str, str, str]]:
         ("Margin of the existing cooler", _percent(cooler.existing_margin_percent), "before the reserve"),
         ("Pressure drop of the choice", shown(cooler.drop_hot_bar, "bar"), "oil warm, at the highest temperature"),
         ("Pressure drop of the choice", shown(cooler.drop_cold_bar, "bar"), "oil cold, at the start temperature"),
+        ("Fan of the choice", _fan(audit), "in a year, beside what the drives take"),
         ("Oil in balance", shown(thermal.equilibrium_C, "°C"),
          f"at {shown(state.ambient_temperature_C, '°C')} ambient, with what is fitted today"),
         ("Oil in balance without a cooler", shown(thermal.equilibrium_without_cooler_C, "°C"), ""),
@@ -105,6 +107,15 @@ def cooler_facts(audit: Audit, system: System) -> list[tuple[str, str, str]]:
         ("Heat transfer of the tank", shown(thermal.tank_coefficient_W_m2K, "W/(m²·K)"), ""),
     ]  # fmt: skip
     return [row for row in rows if row[1] != "–" or row[0].startswith("Oil in balance")]
+
+
+def _fan(audit: Audit) -> str:
+    """Energy and money that the chosen cooler's fan takes in a year."""
+    annual = audit.annual
+    if audit.cooler.choice is None or not annual.fan_kWh > 0:
+        return "–"
+    money = "" if annual.fan_cost is None else f", {grouped(annual.fan_cost)} {annual.currency}"
+    return f"{grouped(annual.fan_kWh)} kWh{money}"
 
 
 def _percent(value: float | None) -> str:
