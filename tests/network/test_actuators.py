@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 
 from heataudit.network.solution import State
-from tests.network.small import BAR, L_MIN, PUMP, RELIEF, TIGHT, VALVE, at, drop, flow, run
+from tests.network.small import BAR, L_MIN, PUMP, RELIEF, TIGHT, VALVE, at, attempt, drop, flow, run
 from tests.workbooks import Rows
 
 BORE, RING = np.pi / 4 * 0.080**2, np.pi / 4 * (0.080**2 - 0.045**2)
@@ -134,9 +134,7 @@ def test_a_make_up_check_fills_what_the_pump_does_not() -> None:
     # 50 L/min) draws the rest from the tank: -p_in = 0.5 + 3 (m / 50)², k (50 + m)² = p_in + 2 pi 60 0.92 / D
     motor = [["Actuator", "Kind", "Section", "Displacement [cm³/rev]", "Volumetric efficiency [%]"],
              ["Motor", "motor", "Way", 100, 100]]  # fmt: skip
-    found = run(one(motor, [["Phase", "Duration [s]", "Motor move", "Motor load [N·m]"], ["down", 1, "forward", -8]], **{
-        "Valves": [VALVE, RELIEF, ["Make-up", "check", "Tank", "Motor.A", 50, 0.3, 0.05]],
-    }))  # fmt: skip
+    found = run(one(motor, [["Phase", "Duration [s]", "Motor move", "Motor load [N·m]"], ["down", 1, "forward", -8]], Valves=[VALVE, RELIEF, ["Make-up", "check", "Tank", "Motor.A", 50, 0.3, 0.05]]))  # fmt: skip
     extra, p_in = flow(found, "Make-up")[0], at(found, "Motor.A")[0]
     assert extra > 1
     assert -p_in == pytest.approx(0.05 + 0.3 * (extra / 50) ** 2, rel=1e-6)
@@ -199,3 +197,20 @@ def test_what_is_stalled_behind_checks_shows_the_strongest_pump() -> None:
     assert found.actuators.inlet[0, [0, 3]] / BAR == pytest.approx([203.5, 203.5], abs=0.01)
     assert found.actuators.flow[0] / L_MIN == pytest.approx([0, 20, 0, 0], rel=EXACT)
     assert flow(found, "C1") == pytest.approx([0, 0, 0, 0], abs=1e-9)
+
+
+def test_a_load_that_nothing_resists_has_no_solution() -> None:
+    # a motor between tank and tank, driven: no throttle, no line, no void holds it; with a throttle there is a speed
+    def machine(outlet: str) -> dict[str, Rows]:
+        return {
+            "Pumps": TIGHT, "Valves": [VALVE, RELIEF, ["Brake", "throttle", "a", "Tank", 20, 10, None]],
+            "Actuators": [["Actuator", "Kind", "Displacement [cm³/rev]", "Port A", "Port B", "Volumetric efficiency [%]"],
+                          ["Drum", "motor", 100, "Tank", outlet, 100]],
+            "Duty cycle": [["Phase", "Duration [s]", "Drum move", "Drum load [N·m]"], ["down", 1, "forward", -50],
+                           ["rest", 1, "hold", None]],
+        }  # fmt: skip
+
+    assert attempt(machine("Tank")).converged.tolist() == [False, True]
+    found = run(machine("a"))
+    dp = 2 * np.pi * 50 * 0.92 / 100e-6 / BAR
+    assert found.actuators.flow[0] / L_MIN == pytest.approx([20 * np.sqrt(dp / 10), 0], rel=EXACT)
