@@ -25,6 +25,9 @@ START_RETURN = 2e5
 VISCOSITY_GOAL = 1e-11
 VISCOSITY_ROUNDS = 80
 SOLVED = 1e-8
+RUNAWAY = 1e6
+"""Flow [-], per pump flow, that no machine has: nothing resists a load that drives, and there is no solution."""
+
 OPENS = 1.0
 """Pressure [Pa] over its opening pressure at which a branch that was left out is put in."""
 
@@ -143,7 +146,9 @@ def _settle_open(branches: Branches, around: Surroundings) -> Settled:
         if failed.size:
             point.put(failed, solve_reduced(elements.take(failed), start[:, failed]))
         iterations += point.iterations
-    return Settled(state, throttled, factor.copy(), iterations, point.residual, steady & (point.residual < SOLVED))
+    bounded = np.abs(point.flow).max(axis=0, initial=0.0) < RUNAWAY
+    solved = steady & bounded & (point.residual < SOLVED)
+    return Settled(state, throttled, factor.copy(), iterations, point.residual, solved)
 
 
 def _viscosity_factor(branches: Branches, state: Spread, coefficient: float) -> Array:

@@ -133,9 +133,10 @@ def test_any_two_branches(p1: float, p2: float, drop_1: float, drop_2: float, to
     expected = split((p1, k1), (p2, k2), total)
     got = shares(throttles((p1, k1), (p2, k2), total))
     assert got[2] == pytest.approx(expected[2], rel=EXACT, abs=LEAST)
-    # What 0.001 Pa moves between the branches: no more than it does where the weaker one is just open, dp = k q².
+    # What 0.001 Pa moves between the branches: no more than it does where the weaker one is just open, dp = k q²; and
+    # the solver makes square laws linear below 1e-6 of the pump flow, so that a branch may open by about as much.
     moved = sqrt(LEAST / min(k1, k2))
-    assert got[:2] == pytest.approx(expected[:2], rel=EXACT, abs=min(moved, 1e-6 * total))
+    assert got[:2] == pytest.approx(expected[:2], rel=EXACT, abs=min(moved, 3e-6 * total))
 
 
 def test_two_laminar_lines() -> None:
